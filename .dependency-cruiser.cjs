@@ -1,6 +1,6 @@
 // A room imports only from floors below it, and from itself. Rooms on one floor do not know each other.
 const floors = [
-  ['fault', 'quantities'],
+  ['fault', 'quantities', 'version'],
   ['numeric', 'fixed', 'file'],
   ['source', 'weather'],
   ['table', 'tracker'],

@@ -1,0 +1,97 @@
+import { expm1, exp } from '../numeric/exponential.js';
+import { log } from '../numeric/logarithm.js';
+import { wrightOmega } from '../numeric/wright-omega.js';
+import type { Amperes, AmperesPerVolt, Volts } from '../quantities.js';
+import type { Curve, Peak } from './curve.js';
+import { junctionVoltage, type SingleDiode } from './single-diode.js';
+import { singleDiodePeak } from './single-diode-peak.js';
+
+/**
+ * The I-V curve of one single-diode equation.
+ *
+ * The equation is solved in closed form by the Wright omega function (the logarithmic form of the
+ * Lambert W solution, so that nothing overflows):
+ *
+ *     I = (Iph + I0 - V Gsh) / D - (a / Rs) omega(x),   D = 1 + Rs Gsh,
+ *     x = ln(Rs I0 / (a D)) + (V + Rs (Iph + I0)) / (a D)
+ *
+ * For a fixed curve that is one multiplication, one table look-up and a short polynomial a point.
+ *
+ * Accuracy: current within 1e-12 of the short-circuit current (of the current itself where that is
+ * larger, far beyond open circuit), open-circuit voltage and peak within 1e-12 relative, held
+ * against 40-digit references for 1 to 200 cells, 1 to 1500 W/m², -40 to 90 °C, Rs = 0 and an
+ * infinite shunt resistance included.
+ */
+export class SingleDiodeCurve implements Curve {
+  readonly diode: SingleDiode;
+  // The constants of the closed form; `omegaScale` = a / Rs is 0 where there is no series
+  // resistance and the equation is explicit in V.
+  readonly #omegaScale: number;
+  readonly #offset: number;
+  readonly #perVolt: number;
+  readonly #current0: Amperes;
+  readonly #shunt: AmperesPerVolt;
+
+  #openCircuitVoltage: Volts = NaN;
+  #peaks: readonly Peak[] | undefined;
+
+  constructor(diode: SingleDiode) {
+    this.diode = diode;
+    const { photocurrent, saturationCurrent, idealityVoltage, seriesResistance } = diode;
+    const divisor = 1 + seriesResistance * diode.shuntConductance;
+    const source = photocurrent + saturationCurrent;
+    this.#perVolt = 1 / (idealityVoltage * divisor);
+    this.#current0 = source / divisor;
+    this.#shunt = diode.shuntConductance / divisor;
+    if (seriesResistance * source < NO_DROP * idealityVoltage) {
+      this.#omegaScale = 0;
+      this.#offset = 0;
+    } else {
+      this.#omegaScale = idealityVoltage / seriesResistance;
+      this.#offset =
+        log((seriesResistance * saturationCurrent) / (idealityVoltage * divisor)) +
+        seriesResistance * source * this.#perVolt;
+    }
+  }
+
+  current(voltage: Volts): Amperes {
+    if (this.#omegaScale === 0) return this.#explicitCurrent(voltage);
+    const omega = wrightOmega(this.#offset + voltage * this.#perVolt);
+    return this.#current0 - voltage * this.#shunt - this.#omegaScale * omega;
+  }
+
+  slope(voltage: Volts): AmperesPerVolt {
+    if (this.#omegaScale === 0) {
+      const { saturationCurrent, idealityVoltage } = this.diode;
+      return -this.#shunt - (saturationCurrent / idealityVoltage) * exp(voltage / idealityVoltage);
+    }
+    const omega = wrightOmega(this.#offset + voltage * this.#perVolt);
+    return -this.#shunt - (this.#omegaScale * this.#perVolt * omega) / (1 + omega);
+  }
+
+  get shortCircuitCurrent(): Amperes {
+    return this.current(0);
+  }
+
+  get openCircuitVoltage(): Volts {
+    if (Number.isNaN(this.#openCircuitVoltage)) {
+      this.#openCircuitVoltage = junctionVoltage(this.diode, 0);
+    }
+    return this.#openCircuitVoltage;
+  }
+
+  peaks(): readonly Peak[] {
+    this.#peaks ??= [singleDiodePeak(this.diode, this.openCircuitVoltage)];
+    return this.#peaks;
+  }
+
+  #explicitCurrent(voltage: Volts): Amperes {
+    const { saturationCurrent, idealityVoltage, photocurrent } = this.diode;
+    return (
+      photocurrent - saturationCurrent * expm1(voltage / idealityVoltage) - voltage * this.#shunt
+    );
+  }
+}
+
+// Rs below this share of a / Iph moves the junction by less than the rounding of its voltage.
+const NO_DROP = 1e-17;

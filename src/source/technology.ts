@@ -1,0 +1,54 @@
+/**
+ * Materials of cells: band gaps and what is plausible for one cell.
+ *
+ * Silicon: 1.121 eV and -0.0002677 1/K, De Soto, Klein and Beckman 2006 (Solar Energy 80:78-88).
+ * The other band gaps are commonly used with the same method but are from memory, unconfirmed.
+ */
+export interface Technology {
+  readonly title: string;
+  /** Band gap at 25 °C, in electronvolts. */
+  readonly bandGap: number;
+  /** Relative change of the band gap, 1/K. */
+  readonly bandGapSlope: number;
+  /** Plausible open-circuit voltage of one cell at STC, in volts. */
+  readonly cellVoltage: readonly [least: number, most: number];
+}
+
+const SILICON = { bandGap: 1.121, bandGapSlope: -0.0002677, cellVoltage: [0.3, 1.3] } as const;
+
+export const TECHNOLOGIES = {
+  'mono-si': { title: 'monocrystalline silicon', ...SILICON },
+  'poly-si': { title: 'polycrystalline silicon', ...SILICON },
+  cdte: {
+    title: 'cadmium telluride',
+    bandGap: 1.475,
+    bandGapSlope: -0.0003,
+    cellVoltage: [0.3, 1.4],
+  },
+  cis: {
+    title: 'copper indium selenide',
+    bandGap: 1.01,
+    bandGapSlope: -0.00011,
+    cellVoltage: [0.3, 1.1],
+  },
+  cigs: {
+    title: 'copper indium gallium selenide',
+    bandGap: 1.15,
+    bandGapSlope: 0,
+    cellVoltage: [0.3, 1.1],
+  },
+  gaas: {
+    title: 'gallium arsenide',
+    bandGap: 1.424,
+    bandGapSlope: -0.000433,
+    cellVoltage: [0.5, 1.5],
+  },
+  'a-si-triple': {
+    title: 'triple-junction amorphous silicon',
+    bandGap: 1.6,
+    bandGapSlope: 0,
+    cellVoltage: [1, 3],
+  },
+} as const satisfies Readonly<Record<string, Technology>>;
+
+export type TechnologyName = keyof typeof TECHNOLOGIES;

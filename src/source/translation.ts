@@ -1,0 +1,62 @@
+import { exp } from '../numeric/exponential.js';
+import {
+  BOLTZMANN,
+  ELEMENTARY_CHARGE,
+  STC_IRRADIANCE,
+  STC_TEMPERATURE,
+  type AmperesPerKelvin,
+  type Kelvin,
+  type WattsPerSquareMetre,
+} from '../quantities.js';
+import type { SingleDiode } from './single-diode.js';
+import { TECHNOLOGIES, type TechnologyName } from './technology.js';
+
+/** What translation needs beside the five parameters at STC. */
+export interface TemperatureBehaviour {
+  readonly technology: TechnologyName;
+  /** Change of short-circuit current with cell temperature at 1000 W/m². */
+  readonly shortCircuitCoefficient: AmperesPerKelvin;
+}
+
+/**
+ * The five parameters at another irradiance and cell temperature, from those at STC, after
+ * De Soto, Klein and Beckman 2006 (Solar Energy 80:78-88), with the air-mass modifier at 1:
+ *
+ *     a    = a_r T/T_r           Iph = (G/G_r) (Iph_r + alpha (T - T_r))
+ *     I0   = I0_r (T/T_r)³ exp(Eg_r / (k T_r) - Eg(T) / (k T)),  Eg(T) = Eg_r (1 + c (T - T_r))
+ *     Rsh  = Rsh_r G_r/G         Rs  = Rs_r
+ *
+ * Exact by construction at STC. Irradiance 0 gives no photocurrent and no shunt path.
+ * Range: irradiance 0 to 2000 W/m²; a photocurrent that would fall below zero is held at zero.
+ */
+export function translate(
+  reference: SingleDiode,
+  behaviour: TemperatureBehaviour,
+  irradiance: WattsPerSquareMetre,
+  temperature: Kelvin,
+): SingleDiode {
+  const sun = irradiance / STC_IRRADIANCE;
+  const rise = temperature - STC_TEMPERATURE;
+  const ratio = temperature / STC_TEMPERATURE;
+  const photocurrent = sun * (reference.photocurrent + behaviour.shortCircuitCoefficient * rise);
+  return {
+    photocurrent: Math.max(photocurrent, 0),
+    saturationCurrent:
+      reference.saturationCurrent * saturationRatio(behaviour.technology, temperature),
+    idealityVoltage: reference.idealityVoltage * ratio,
+    seriesResistance: reference.seriesResistance,
+    shuntConductance: reference.shuntConductance * sun,
+  };
+}
+
+/** I0(T) / I0(25 °C) of a technology. */
+export function saturationRatio(technology: TechnologyName, temperature: Kelvin): number {
+  const { bandGap, bandGapSlope } = TECHNOLOGIES[technology];
+  const ratio = temperature / STC_TEMPERATURE;
+  const gapAtReference = (bandGap * PER_KELVIN) / STC_TEMPERATURE;
+  const gap = bandGap * (1 + bandGapSlope * (temperature - STC_TEMPERATURE));
+  return ratio * ratio * ratio * exp(gapAtReference - (gap * PER_KELVIN) / temperature);
+}
+
+/** Electronvolts over k: an energy of 1 eV in kelvin. */
+const PER_KELVIN = ELEMENTARY_CHARGE / BOLTZMANN;

@@ -1,0 +1,144 @@
+import { Fault } from '../fault.js';
+import { toCelsius, type Conditions } from '../quantities.js';
+import { globalPeak, type Curve, type Peak, type Source } from '../source/curve.js';
+import { placeVoltageCodes } from './point-placement.js';
+import {
+  conditionColumns,
+  INDEX_FORMAT,
+  keyPointColumns,
+  layOut,
+  peakColumns,
+  type ColumnWish,
+  type Product,
+  type ProductFormats,
+} from './product.js';
+
+export interface CurveSetPlan {
+  readonly name: string;
+  readonly source: Source;
+  readonly conditions: readonly Conditions[];
+  readonly points: number;
+  readonly formats: ProductFormats;
+}
+
+/**
+ * N-point I-V tables at chosen conditions, each with Isc, Voc and every peak. Voltages are placed
+ * on the code grid; each current is the model's at the voltage that its code stands for.
+ * @throws Fault `TOO_FEW_CODES`, or `VALUE_OUT_OF_RANGE` from a format that refuses.
+ */
+export function curveSet(plan: CurveSetPlan): Product {
+  const { formats, source, points } = plan;
+  const curves = layOut([
+    ...conditionColumns(source.groups, formats),
+    ...keyPointColumns(formats),
+    ...indexColumns(),
+  ]);
+  const pointLayout = layOut([
+    { name: 'voltage', quantity: 'voltage', format: formats.voltage },
+    { name: 'current', quantity: 'current', format: formats.current },
+  ]);
+  const peakLayout = layOut(peakColumns(formats));
+  const voltage = pointLayout.columns[0]!.quantizer;
+  const tables = plan.conditions.map((conditions) => {
+    const curve = source.at(conditions);
+    const voltageCodes = atConditions(conditions, () =>
+      placeVoltageCodes(curve.openCircuitVoltage, points, voltage),
+    );
+    return { conditions, curve, peaks: curve.peaks(), voltageCodes };
+  });
+  const peaks = tables.flatMap((table) => table.peaks);
+  const firstPeaks = runningTotals(tables.map((table) => table.peaks.length));
+  return {
+    name: plan.name,
+    kind: 'curve-set',
+    sections: [
+      {
+        tag: 'CURV',
+        noun: 'curve',
+        ...curves,
+        count: tables.length,
+        values: (index, into) => {
+          into.set(curveValues(tables[index]!, index * points, points, firstPeaks[index]!));
+        },
+      },
+      {
+        tag: 'POIN',
+        noun: 'point',
+        ...pointLayout,
+        count: tables.length * points,
+        values: (index, into) => {
+          const table = tables[Math.floor(index / points)]!;
+          const volts = voltage.decode(table.voltageCodes[index % points]!);
+          into[0] = volts;
+          // Rounding may leave the last current a hair below zero.
+          into[1] = Math.max(table.curve.current(volts), 0);
+        },
+      },
+      {
+        tag: 'PEAK',
+        noun: 'peak',
+        ...peakLayout,
+        count: peaks.length,
+        values: (index, into) => {
+          const peak = peaks[index]!;
+          into[0] = peak.voltage;
+          into[1] = peak.current;
+          into[2] = peak.power;
+        },
+      },
+    ],
+  };
+}
+
+interface CurveTable {
+  readonly conditions: Conditions;
+  readonly curve: Curve;
+  readonly peaks: readonly Peak[];
+}
+
+const indexColumns = (): ColumnWish[] => [
+  { name: 'first_point', quantity: 'firstPoint', format: INDEX_FORMAT },
+  { name: 'point_count', quantity: 'pointCount', format: INDEX_FORMAT },
+  { name: 'first_peak', quantity: 'firstPeak', format: INDEX_FORMAT },
+  { name: 'peak_count', quantity: 'peakCount', format: INDEX_FORMAT },
+  { name: 'global_peak', quantity: 'globalPeak', format: INDEX_FORMAT },
+];
+
+function curveValues(
+  { conditions, curve, peaks }: CurveTable,
+  firstPoint: number,
+  points: number,
+  firstPeak: number,
+): number[] {
+  const { irradiance, cellTemperature } = conditions;
+  const groups = Array.from({ length: irradiance.length }, (_, group) => [
+    irradiance[group]!,
+    toCelsius(cellTemperature[group]!),
+  ]).flat();
+  const best = peaks.indexOf(globalPeak(peaks));
+  const { shortCircuitCurrent, openCircuitVoltage } = curve;
+  return [
+    ...groups,
+    shortCircuitCurrent,
+    openCircuitVoltage,
+    ...[firstPoint, points, firstPeak, peaks.length, firstPeak + best],
+  ];
+}
+
+const runningTotals = (counts: readonly number[]): number[] =>
+  counts.map((_, index) => counts.slice(0, index).reduce((sum, count) => sum + count, 0));
+
+// A Fault from deep inside does not know which curve it was about.
+function atConditions<T>(conditions: Conditions, build: () => T): T {
+  try {
+    return build();
+  } catch (error) {
+    if (!(error instanceof Fault)) throw error;
+    const celsius = toCelsius(conditions.cellTemperature[0]!);
+    const which = `At ${conditions.irradiance[0]!} W/m² and ${celsius.toFixed(1)} °C: `;
+    throw new Fault(
+      error.kind,
+      error.problems.map((problem) => ({ ...problem, message: which + problem.message })),
+    );
+  }
+}

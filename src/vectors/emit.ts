@@ -1,0 +1,120 @@
+import { basename } from 'node:path';
+import { Fault } from '../fault.js';
+import { StagedFolder, type StagedFile } from '../file/staged-folder.js';
+import { refuseForeignFolder } from './suite-folder.js';
+import {
+  MANIFEST_NAME,
+  manifestText,
+  newManifest,
+  type ListedInput,
+  type ListedProduct,
+  type Manifest,
+} from './manifest.js';
+import { refuseUnfit, sinksFor } from './outputs.js';
+import type { Product } from './product.js';
+import { pour } from './sink.js';
+import type { OutputForm } from './suite-definition.js';
+import { loadSuite, type PlannedProduct, type Suite, type SuiteInput } from './suite.js';
+
+export interface EmitOptions {
+  /** Called now and then with the product being written and how far it is. */
+  readonly progress?: (product: string, done: number, total: number) => void;
+}
+
+export interface Emission {
+  readonly folder: string;
+  readonly manifest: Manifest;
+  readonly suite: Suite;
+}
+
+/**
+ * Builds the suite that a suite file describes into a folder, which it replaces whole.
+ *
+ * Everything is checked before anything is written, and written beside the folder before the
+ * folder is touched: a run that fails or is killed leaves the folder as it was. Memory does not
+ * grow with the length of a timeline.
+ * @throws Fault `NOT_A_SUITE` if the folder holds other things; Faults of the inputs; `DISK`.
+ */
+export function emitSuite(suiteFile: string, folder: string, options: EmitOptions = {}): Emission {
+  const suite = loadSuite(suiteFile);
+  refuseForeignFolder(folder);
+  for (const { build, outputs } of suite.products) {
+    inSuite(suiteFile, () => {
+      refuseUnfit(build(), outputs);
+    });
+  }
+  const staged = new StagedFolder(folder);
+  try {
+    const inputs = writeInputs(staged, suite.inputs);
+    const products = suite.products.map((planned) =>
+      inSuite(suiteFile, () => writeProduct(staged, planned, options)),
+    );
+    const manifest = newManifest(suite.name, inputs, products);
+    staged.write(MANIFEST_NAME, manifestText(manifest));
+    staged.commit();
+    return { folder: staged.target, manifest, suite };
+  } catch (error) {
+    staged.abandon();
+    throw error;
+  }
+}
+
+// A copy of every input goes with the suite, so that it can be verified by itself.
+function writeInputs(staged: StagedFolder, inputs: readonly SuiteInput[]): ListedInput[] {
+  const taken = new Set<string>();
+  return inputs.map(({ namedAs, file, text }) => {
+    let path = `inputs/${basename(file)}`;
+    for (let copy = 2; taken.has(path); copy++) path = `inputs/${copy}-${basename(file)}`;
+    taken.add(path);
+    return { ...staged.write(path, text), named_as: namedAs ?? null };
+  });
+}
+
+function writeProduct(
+  staged: StagedFolder,
+  planned: PlannedProduct,
+  { progress }: EmitOptions,
+): ListedProduct {
+  const product = planned.build();
+  const open: { file: StagedFile; form: OutputForm }[] = [];
+  try {
+    const sinks = sinksFor(product, planned.outputs, (path, form) => {
+      const file = staged.file(path);
+      open.push({ file, form });
+      return (chunk) => {
+        file.write(chunk);
+      };
+    });
+    pour(product, sinks, (done, total) => progress?.(product.name, done, total));
+    const files = open.map(({ file, form }) => ({ ...file.end(), form }));
+    return listing(product, planned.source, files);
+  } finally {
+    for (const { file } of open) file.close();
+  }
+}
+
+function listing(product: Product, source: string, files: ListedProduct['files']): ListedProduct {
+  const { name, kind, sections } = product;
+  const saturated = sections.flatMap((section) =>
+    section.columns.flatMap(({ name: column, quantizer }) => {
+      const { saturatedLow: low, saturatedHigh: high } = quantizer;
+      return low + high === 0 ? [] : [{ column: `${section.noun}.${column}`, low, high }];
+    }),
+  );
+  const counts = sections.map(({ tag, count }) => ({ tag, records: count }));
+  return { name, kind, source, sections: counts, saturated, files };
+}
+
+/** Faults without a place are about what the suite file asked for. */
+function inSuite<T>(file: string, work: () => T): T {
+  try {
+    return work();
+  } catch (error) {
+    if (!(error instanceof Fault)) throw error;
+    throw new Fault(
+      error.kind,
+      error.problems.map((problem) => ({ file, ...problem })),
+      { cause: error },
+    );
+  }
+}

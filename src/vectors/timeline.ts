@@ -1,0 +1,65 @@
+import { toCelsius, type Seconds } from '../quantities.js';
+import { globalPeak, type Source } from '../source/curve.js';
+import { sampleCount } from '../weather/sampling.js';
+import { writableConditions, type Weather } from '../weather/weather.js';
+import {
+  conditionColumns,
+  keyPointColumns,
+  layOut,
+  peakColumns,
+  type Product,
+  type ProductFormats,
+} from './product.js';
+
+export interface TimelinePlan {
+  readonly name: string;
+  readonly source: Source;
+  readonly weather: Weather;
+  readonly period: Seconds;
+  readonly formats: ProductFormats;
+}
+
+/**
+ * What a source does in a weather, sample by sample: time, conditions, Isc, Voc and the global
+ * peak. Nothing is kept between samples, so a timeline of any length takes constant memory.
+ */
+export function timeline(plan: TimelinePlan): Product {
+  const { source, weather, period, formats } = plan;
+  const layout = layOut([
+    { name: 'time', quantity: 'time', format: formats.time },
+    ...conditionColumns(source.groups, formats),
+    ...keyPointColumns(formats),
+    ...peakColumns(formats),
+  ]);
+  const conditions = writableConditions(source.groups);
+  const { irradiance, cellTemperature } = conditions;
+  return {
+    name: plan.name,
+    kind: 'timeline',
+    sections: [
+      {
+        tag: 'SAMP',
+        noun: 'sample',
+        ...layout,
+        count: sampleCount(weather.duration, period),
+        values: (index, into) => {
+          const time = index * period;
+          weather.conditionsAt(time, conditions);
+          const curve = source.at(conditions);
+          const peak = globalPeak(curve.peaks());
+          let column = 0;
+          into[column++] = time;
+          for (let group = 0; group < source.groups; group++) {
+            into[column++] = irradiance[group]!;
+            into[column++] = toCelsius(cellTemperature[group]!);
+          }
+          into[column++] = curve.shortCircuitCurrent;
+          into[column++] = curve.openCircuitVoltage;
+          into[column++] = peak.voltage;
+          into[column++] = peak.current;
+          into[column++] = peak.power;
+        },
+      },
+    ],
+  };
+}

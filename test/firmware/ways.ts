@@ -1,0 +1,41 @@
+/** The ways in which the firmware library is compiled for the tests: each test runs in all. */
+import { afterAll, beforeAll, describe } from 'vitest';
+import type { CLibrary } from './c-library.js';
+import { canSanitize } from './native-build.js';
+import { openNativeLibrary } from './native-port.js';
+import { openWasmLibrary } from './wasm-port.js';
+
+export interface Way {
+  /** Ends "compiled …". */
+  readonly name: string;
+  /** Whether this machine lacks what it needs. */
+  readonly missing: boolean;
+  readonly open: () => Promise<CLibrary>;
+}
+
+const ways: readonly Way[] = [
+  { name: 'to WebAssembly', missing: false, open: openWasmLibrary },
+  {
+    name: 'by the system compiler with sanitizers',
+    missing: !canSanitize(),
+    open: () => Promise.resolve(openNativeLibrary()),
+  },
+];
+
+/**
+ * Declares tests once for each way; where the machine lacks what a way needs, they are skipped by
+ * name. The library is opened before the first of them and closed after the last: a sanitizer's
+ * complaint at any time fails them.
+ */
+export function describeEveryWay(title: string, tests: (library: () => CLibrary) => void): void {
+  for (const { name, missing, open } of ways) {
+    describe.skipIf(missing)(`${title}, compiled ${name},`, () => {
+      let library: CLibrary;
+      beforeAll(async () => {
+        library = await open();
+      });
+      afterAll(() => library.close());
+      tests(() => library);
+    });
+  }
+}
