@@ -29,25 +29,7 @@ static inline uint32_t hp_load_u32(const uint8_t *at)
 }
 
 /* The code in a row as a word. The caller has made sure that the row is there. */
-static inline uint32_t hp_load_row(const struct hp_column *column, uint32_t row)
-{
-    const uint8_t *at = column->codes + row * (uint32_t)column->stride;
-    uint32_t word;
-    uint32_t sign;
-
-    if (column->storage == 4) {
-        return hp_load_u32(at);
-    }
-    if (column->storage == 2) {
-        word = hp_load_u16(at);
-        sign = 0x8000U;
-    } else {
-        word = hp_load_u8(at);
-        sign = 0x80U;
-    }
-    /* Copies the sign bit upwards, modulo 2^32: no shift of a negative number, no branch. */
-    return column->is_signed ? (word ^ sign) - sign : word;
-}
+uint32_t hp_load_row(const struct hp_column *column, uint32_t row);
 
 /* What turns a word of a column into its rank, and a rank into its word, by exclusive or. */
 static inline uint32_t hp_bias(const struct hp_column *column)

@@ -1,41 +1,51 @@
 /* The curves of a curve set, and the look-up of a current at a voltage. */
 #include "hp_bytes.h"
 
-static int find_point(const struct hp_image *image, uint16_t quantity, struct hp_column *column);
-static int find_curve(const struct hp_image *image, uint16_t quantity, struct hp_column *column);
+static int has_columns(const struct hp_image *image);
+static void fetch(const struct hp_image *image, uint32_t tag, uint16_t quantity,
+                  struct hp_column *column);
 static int is_inside(uint32_t first, uint32_t number, uint32_t rows);
 
 enum hp_result hp_find_curves(const struct hp_image *image, struct hp_curves *curves)
 {
-    struct hp_curves found;
     struct hp_table peaks;
 
     if (image->kind != HP_KIND_CURVES) {
         return HP_ERR_KIND;
     }
-    if (!find_point(image, HP_VOLTAGE, &found.voltage) ||
-        !find_point(image, HP_CURRENT, &found.current) ||
-        !find_curve(image, HP_FIRST_POINT, &found.first_point) ||
-        !find_curve(image, HP_POINTS, &found.points) ||
-        !find_curve(image, HP_FIRST_PEAK, &found.first_peak) ||
-        !find_curve(image, HP_PEAKS, &found.peaks) ||
-        !find_curve(image, HP_GLOBAL_PEAK, &found.global_peak) ||
-        hp_find_table(image, HP_TAG_PEAKS, &peaks) != HP_OK) {
+    /* Looks for all before it writes any: cheaper in stack than a second hp_curves to copy. */
+    if (!has_columns(image) || hp_find_table(image, HP_TAG_PEAKS, &peaks) != HP_OK) {
         return HP_ERR_NOT_FOUND;
     }
-    found.peak_rows = peaks.rows;
-    *curves = found;
+    fetch(image, HP_TAG_POINTS, HP_VOLTAGE, &curves->voltage);
+    fetch(image, HP_TAG_POINTS, HP_CURRENT, &curves->current);
+    fetch(image, HP_TAG_CURVES, HP_FIRST_POINT, &curves->first_point);
+    fetch(image, HP_TAG_CURVES, HP_POINTS, &curves->points);
+    fetch(image, HP_TAG_CURVES, HP_FIRST_PEAK, &curves->first_peak);
+    fetch(image, HP_TAG_CURVES, HP_PEAKS, &curves->peaks);
+    fetch(image, HP_TAG_CURVES, HP_GLOBAL_PEAK, &curves->global_peak);
+    curves->peak_rows = peaks.rows;
     return HP_OK;
 }
 
-static int find_point(const struct hp_image *image, uint16_t quantity, struct hp_column *column)
+static int has_columns(const struct hp_image *image)
 {
-    return hp_find_column(image, HP_TAG_POINTS, quantity, 0, column) == HP_OK;
+    struct hp_column column;
+
+    for (uint16_t quantity = HP_FIRST_POINT; quantity <= HP_GLOBAL_PEAK; quantity++) {
+        if (hp_find_column(image, HP_TAG_CURVES, quantity, 0, &column) != HP_OK) {
+            return 0;
+        }
+    }
+    return hp_find_column(image, HP_TAG_POINTS, HP_VOLTAGE, 0, &column) == HP_OK &&
+           hp_find_column(image, HP_TAG_POINTS, HP_CURRENT, 0, &column) == HP_OK;
 }
 
-static int find_curve(const struct hp_image *image, uint16_t quantity, struct hp_column *column)
+/* A column that is known to be there. */
+static void fetch(const struct hp_image *image, uint32_t tag, uint16_t quantity,
+                  struct hp_column *column)
 {
-    return hp_find_column(image, HP_TAG_CURVES, quantity, 0, column) == HP_OK;
+    (void)hp_find_column(image, tag, quantity, 0, column);
 }
 
 enum hp_result hp_curve_at(const struct hp_curves *curves, uint32_t index, struct hp_curve *curve)

@@ -75,7 +75,7 @@ export function findRoot(
   let fb = f(b);
   const early = resultAtEnds(a, fa, b, fb);
   if (early !== undefined) return early;
-  let share = 0.5;
+  let share = NaN;
   let reach = 0.5 * tolerance;
   for (let iterations = 0; ; iterations += 1) {
     if (isClosed(a, b, tolerance)) return converged(a, fa, b, fb, iterations);
@@ -241,7 +241,7 @@ function nextReach(reach: number, tolerance: number, sameSide: boolean, x: numbe
   return sameSide && isSmall ? 2 * step : 0.5 * tolerance;
 }
 
-/** Where to go from a (0) towards b (1). NaN from infinite values ends in bisection as well. */
+/** Where to go from a (0) towards b (1); NaN, as infinite values give too, asks for bisection. */
 function interpolatedShare(
   a: number,
   fa: number,
@@ -253,7 +253,7 @@ function interpolatedShare(
   const xi = (a - b) / (c - b);
   const phi = (fa - fb) / (fc - fb);
   const isSafe = phi * phi < xi && (1 - phi) * (1 - phi) < 1 - xi;
-  if (!isSafe) return 0.5;
+  if (!isSafe) return NaN;
   return (
     (fa / (fb - fa)) * (fc / (fb - fc)) + ((c - a) / (b - a)) * (fa / (fc - fa)) * (fb / (fc - fb))
   );

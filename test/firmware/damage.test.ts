@@ -58,9 +58,13 @@ test('the damaged files reach every check of the reader', async () => {
 });
 
 /** What hp_open and hp_check return between them. */
-const VERDICTS = [HP.OK, HP.LENGTH, HP.MAGIC, HP.VERSION, HP.HEADER_CRC, HP.DIRECTORY].concat(
-  [HP.CHANNEL, HP.SECTION_CRC, HP.NOT_FOUND, HP.INDEX, HP.ORDER],
-);
+const VERDICTS = [HP.OK, HP.LENGTH, HP.MAGIC, HP.VERSION, HP.HEADER_CRC, HP.DIRECTORY].concat([
+  HP.CHANNEL,
+  HP.SECTION_CRC,
+  HP.NOT_FOUND,
+  HP.INDEX,
+  HP.ORDER,
+]);
 
 const inspectAll = (
   library: CLibrary,

@@ -67,7 +67,8 @@ export function seal(damaged: Uint8Array): Uint8Array {
     const entry = 32 + 16 * k;
     const start = file.readUInt32LE(entry + 4);
     const end = start + file.readUInt32LE(entry + 8) * file.readUInt32LE(entry + 12);
-    if (start >= 32 && end + 4 <= file.length) file.writeUInt32LE(crc32(file.subarray(start, end)), end);
+    if (start >= 32 && end + 4 <= file.length)
+      file.writeUInt32LE(crc32(file.subarray(start, end)), end);
   }
   const directory = file.subarray(32, 32 + 16 * sections);
   file.writeUInt32LE(crc32(directory, crc32(file.subarray(0, 28))), 28);

@@ -1,5 +1,6 @@
 /** Distances between a double and an exact value, in units in the last place. */
 import { Decimal } from 'decimal.js';
+import type { Random } from '../../src/numeric/random.js';
 
 /** 56 significant digits: a double between 1/2 and 2 needs up to 53 to be written down exactly. */
 export const Precise = Decimal.clone({ precision: 56 });
@@ -51,4 +52,24 @@ function powerOfTwo(exponent: number): Decimal {
     powers.set(exponent, power);
   }
   return power;
+}
+
+/** Draws one argument. */
+export type Region = (random: Random) => number;
+
+/** The worst error of `f` against `reference` over arguments from a region, and where it is. */
+export function worstErrorInUlps(
+  f: (x: number) => number,
+  reference: (x: Decimal) => Decimal,
+  region: Region,
+  random: Random,
+  count: number,
+): { error: number; place: string } {
+  let worst = { error: 0, place: 'nowhere' };
+  for (let i = 0; i < count; i += 1) {
+    const x = region(random);
+    const error = errorInUlps(f(x), reference(exactly(x)));
+    if (!(error <= worst.error)) worst = { error, place: `f(${x}) = ${f(x)}` };
+  }
+  return worst;
 }

@@ -1,0 +1,108 @@
+import { Command, Option } from '@commander-js/extra-typings';
+import type { Fit } from '../index.js';
+
+export function fitCommand() {
+  return new Command('fit')
+    .description('Fit the five single-diode parameters to a datasheet.')
+    .argument('<datasheet>', 'datasheet file (YAML or JSON)')
+    .addOption(
+      new Option('--method <method>', 'simultaneous, or sweep of the ideality factor').choices([
+        'simultaneous',
+        'sweep',
+      ] as const),
+    )
+    .option('--candidates', 'also show every candidate of the sweep')
+    .option('-o, --output <file>', 'write a model file, which other commands take as a source')
+    .option('--json', 'print one JSON document')
+    .action(async (file, options) => {
+      const { fitDatasheet, modelText, parseDatasheet, readInput, writeWhole } =
+        await import('../index.js');
+      const { printJson, say, sayWarnings } = await import('./print.js');
+      const { datasheet, warnings } = parseDatasheet(readInput(file));
+      const method = options.candidates === true ? 'sweep' : options.method;
+      const fit = fitDatasheet(datasheet, method);
+      sayWarnings([...warnings, ...fit.warnings.map((warning) => ({ file, ...warning }))]);
+      if (options.json === true) printJson(asJson(fit));
+      else await printFit(fit, options.candidates === true);
+      if (options.output !== undefined) {
+        writeWhole(options.output, modelText(fit.module));
+        say(`Model written to ${options.output}.`);
+      }
+      if (!fit.solved) {
+        say(`No curve meets this datasheet: ${fit.account}.`);
+        process.exitCode = 1;
+      }
+    });
+}
+
+function asJson(fit: Fit): unknown {
+  const { diode, module, ideality, method, solved, account, agreements, practice } = fit;
+  return {
+    name: module.name,
+    method,
+    solved,
+    account,
+    parameters: {
+      photocurrent_A: diode.photocurrent,
+      saturation_current_A: diode.saturationCurrent,
+      ideality_factor: ideality,
+      series_resistance_ohm: diode.seriesResistance,
+      shunt_resistance_ohm: diode.shuntConductance === 0 ? null : 1 / diode.shuntConductance,
+    },
+    agreements,
+    practice,
+    candidates: fit.candidates,
+  };
+}
+
+async function printFit(fit: Fit, withCandidates: boolean): Promise<void> {
+  const { colours, figure, percentText, printLine, printTable } = await import('./print.js');
+  const { diode, module, ideality } = fit;
+  printLine(colours.bold(module.name));
+  printLine(`${METHOD_TITLES[fit.method]}: ${fit.account}.`);
+  printLine();
+  printTable(
+    ['parameter at STC', '', ''],
+    [
+      ['photocurrent Iph', figure(diode.photocurrent, 6), 'A'],
+      ['saturation current I0', figure(diode.saturationCurrent, 6), 'A'],
+      ['ideality factor A', figure(ideality, 6), ''],
+      ['series resistance Rs', figure(diode.seriesResistance, 6), 'ohm'],
+      ['shunt resistance Rsh', figure(1 / diode.shuntConductance, 6), 'ohm'],
+    ],
+  );
+  printLine();
+  printTable(
+    ['datasheet number', 'datasheet', 'model', 'miss'],
+    fit.agreements.map(({ field, datasheet, model, miss }) => [
+      field,
+      figure(datasheet, 6),
+      figure(model, 6),
+      percentText(miss),
+    ]),
+  );
+  printLine();
+  printTable(
+    ['common practice', 'value', 'holds'],
+    fit.practice.map(({ says, value, holds }) => [says, figure(value), holds ? 'yes' : 'no']),
+  );
+  if (withCandidates) {
+    printLine();
+    printTable(
+      ['A', 'I0 A', 'Rs ohm', 'Voc miss', 'Vmp miss', 'Imp miss', 'Pmp miss', 'overall'],
+      fit.candidates.map((row) => [
+        row.ideality.toFixed(3),
+        figure(row.diode.saturationCurrent, 6),
+        row.feasible ? figure(row.diode.seriesResistance, 5) : 'negative',
+        ...[row.openCircuitMiss, row.peakVoltageMiss, row.peakCurrentMiss].map(percentText),
+        percentText(row.peakPowerMiss),
+        percentText(row.badness),
+      ]),
+    );
+  }
+}
+
+const METHOD_TITLES = {
+  simultaneous: 'Simultaneous solution',
+  sweep: 'Sweep of the ideality factor',
+} as const;

@@ -1,0 +1,35 @@
+import { Command } from '@commander-js/extra-typings';
+import type { Verification } from '../index.js';
+
+export function verifyCommand() {
+  return new Command('verify')
+    .description('Recompute everything about a built suite and say what does not hold.')
+    .argument('<folder>', 'folder that emit built')
+    .option('--json', 'print one JSON document')
+    .action(async (folder, options) => {
+      const { verifySuite } = await import('../index.js');
+      const { printJson } = await import('./print.js');
+      const { ProgressLine } = await import('./progress.js');
+      const line = new ProgressLine();
+      const verification = verifySuite(folder, {
+        progress: (product, done, total) => {
+          line.show(product, done, total);
+        },
+      });
+      line.clear();
+      if (options.json === true) printJson(verification);
+      else await printVerification(verification);
+      if (verification.problems.length > 0) process.exitCode = 1;
+    });
+}
+
+export async function printVerification({ suite, checked, problems }: Verification): Promise<void> {
+  const { colours, printLine, reportProblems } = await import('./print.js');
+  for (const { what, count } of checked) printLine(`  ${count} ${what}`);
+  reportProblems(problems);
+  printLine(
+    problems.length === 0
+      ? `${colours.green('whole')}: ${suite} holds what its inputs give`
+      : `${colours.red('damaged')}: ${problems.length} problems in ${suite}`,
+  );
+}
