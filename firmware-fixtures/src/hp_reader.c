@@ -172,7 +172,7 @@ static int is_column(const struct hp_image *image, const uint8_t *channel)
     const uint8_t width = hp_load_u8(channel + CHANNEL_WIDTH);
     struct hp_table table;
 
-    if (hp_find_table(image, hp_load_u32(channel), &table) != HP_OK) {
+    if (hp_find_table(image, hp_load_u32(channel), &table) != HP_OK || table.tag == TAG_CHANNELS) {
         return 0;
     }
     if (storage != 1 && storage != 2 && storage != 4) {

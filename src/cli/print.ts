@@ -84,4 +84,6 @@ export function figure(value: number, digits = 4): string {
   return String(Number(value.toPrecision(digits)));
 }
 
-export const percentText = (ratio: number): string => `${(100 * ratio).toFixed(3)} %`;
+/** Adding 0 turns -0 into 0. */
+export const percentText = (ratio: number): string =>
+  `${(Number((100 * ratio).toFixed(3)) + 0).toFixed(3)} %`;

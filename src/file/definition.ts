@@ -127,7 +127,7 @@ function show(found: unknown): string {
   if (found === null) return 'nothing';
   if (Array.isArray(found)) return 'a list';
   if (typeof found === 'object') return 'a group of keys';
-  return typeof found === 'string' ? `"${found.slice(0, 60)}"` : String(found);
+  return typeof found === 'string' ? `"${found.slice(0, 60)}"` : JSON.stringify(found);
 }
 
 const valueAt = (value: unknown, path: FieldPath): unknown =>

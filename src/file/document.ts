@@ -93,7 +93,7 @@ function valueNode(root: ParsedNode, path: FieldPath): ParsedNode {
 }
 
 function child(node: ParsedNode, step: PropertyKey): ParsedNode | undefined {
-  if (isSeq(node)) return node.items[Number(step)] as ParsedNode | undefined;
+  if (isSeq(node)) return node.items[Number(step)];
   if (!isMap(node)) return undefined;
   return (node.get(String(step), true) as ParsedNode | undefined) ?? undefined;
 }
@@ -103,7 +103,7 @@ function keyNode(root: ParsedNode, path: FieldPath): ParsedNode | undefined {
   const last = path.at(-1);
   if (!isMap(parent) || last === undefined) return undefined;
   const pair = parent.items.find((item) => isPair(item) && scalarText(item.key) === String(last));
-  return pair?.key as ParsedNode | undefined;
+  return pair?.key;
 }
 
 const scalarText = (node: unknown): string | undefined =>

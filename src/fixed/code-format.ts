@@ -7,7 +7,7 @@ export const OVERFLOWS = ['saturate', 'refuse'] as const;
 export type Overflow = (typeof OVERFLOWS)[number];
 
 /** The choices that are free once the codes themselves are fixed. */
-export interface CodeHandling {
+interface CodeHandling {
   readonly rounding: Rounding;
   /** `saturate`: the nearest code, counted. `refuse`: a Fault. */
   readonly overflow: Overflow;

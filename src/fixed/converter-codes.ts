@@ -11,7 +11,7 @@ import { intendedDecimal } from './intended-decimal.js';
 
 /** Which code stands for the reference voltage: one past the last (2^N) or the last (2^N-1). */
 export const FULL_SCALES = ['2^N', '2^N-1'] as const;
-export type FullScale = (typeof FULL_SCALES)[number];
+type FullScale = (typeof FULL_SCALES)[number];
 
 /** What stands between the quantity and the pin: a gain, or its inverse. */
 export type PinScaling =

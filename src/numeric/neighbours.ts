@@ -6,7 +6,8 @@ const bits = new BigInt64Array(double.buffer);
 /**
  * The least double above x; +Infinity above the largest.
  *
- *   x = ±0  2^-1074    x = -Inf  -(2^1024 - 2^971)    x = +Inf  +Inf    x = NaN  NaN
+ *   x = ±0  2^-1074    x = -2^-1074  0    x = +Inf  +Inf    x = NaN  NaN
+ *   x = -Inf  the lowest finite double
  */
 export function nextUp(x: number): number {
   return x < Infinity ? atRank(rank(x) + 1n) : x;

@@ -2,16 +2,11 @@
  * The Wright omega function for real arguments: the one w > 0 with w + ln w = x, in other words
  * Lambert's W of e^x without forming e^x, which would overflow.
  *
- *   x = -Inf  0        x = +Inf  +Inf        x = NaN  NaN
- *   x = 1     1
- *
- * Relative error at most 4 ulp for x >= -6 (2e-16 of x more below, where omega is e^x and so
- * inherits the conditioning of the exponential). Held against arbitrary precision in the tests.
- *
  * Between -6 and 40 a table of Taylor series answers without a transcendental function: omega has
  * its nearest singularities at -1 ± iπ, so around a knot the series converges at least as fast as
- * powers of (1/32)/π, and nine terms reach double precision.
- * Above 40 and in building the table: the iteration of Fritsch, Shafer and Crowley 1973 (CACM 16,
+ * powers of (1/32)/π, and nine terms reach double precision. A knot is worked out when it is first
+ * needed: loading this module costs nothing, and one curve touches a few dozen.
+ * Above 40 and for the knots: the iteration of Fritsch, Shafer and Crowley 1973 (CACM 16,
  * algorithm 443), which is of fourth order. Below -6: the Lagrange series of W in t = e^x.
  */
 import { exp } from './exponential.js';
@@ -22,26 +17,34 @@ const TABLE_TO = 40;
 const KNOTS_PER_UNIT = 16;
 const TERMS = 9;
 
-const table = buildTable();
+/** TERMS coefficients a knot; 0, which omega never is, where a knot has not been needed yet. */
+const table = new Float64Array(((TABLE_TO - TABLE_FROM) * KNOTS_PER_UNIT + 1) * TERMS);
 
+/**
+ * The w > 0 with w + ln w = x. Error at most 2 ulp, for subnormal results too.
+ *
+ *   x = -Inf  0        x = +Inf  +Inf        x = NaN  NaN
+ *   x = 1     1        x < -745.1332191019411  0: omega is below half the smallest double
+ */
 export function wrightOmega(x: number): number {
   if (x >= TABLE_FROM && x < TABLE_TO) {
-    const position = (x - TABLE_FROM) * KNOTS_PER_UNIT;
-    const knot = (position + 0.5) | 0;
-    const d = (position - knot) * (1 / KNOTS_PER_UNIT);
+    const knot = ((x - TABLE_FROM) * KNOTS_PER_UNIT + 0.5) | 0;
+    // Exact: the knot and x are multiples of the last place of one of them, and close.
+    const d = x - (knot * (1 / KNOTS_PER_UNIT) + TABLE_FROM);
     const k = knot * TERMS;
+    const atKnot = table[k]!;
+    if (atKnot === 0) return 1 * afterFilling(knot, x);
     // Estrin's scheme: short dependency chains keep the processor busy.
     const d2 = d * d;
-    const d4 = d2 * d2;
     const low = table[k + 1]! + d * table[k + 2]! + d2 * (table[k + 3]! + d * table[k + 4]!);
     const high = table[k + 5]! + d * table[k + 6]! + d2 * (table[k + 7]! + d * table[k + 8]!);
-    return table[k]! + d * (low + d4 * high);
+    return atKnot + d * (low + d2 * d2 * high);
   }
   return x < TABLE_FROM ? belowTable(x) : aboveTable(x);
 }
 
-// W(t) = t - t² + 3/2 t³ - 8/3 t⁴ + 125/24 t⁵ - 54/5 t⁶ + 16807/720 t⁷ - ..., t < e^-6: the first
-// term left out is 16384/315 t⁸, below 1e-16 of the result.
+// W(t) = t - t² + 3/2 t³ - 8/3 t⁴ + 125/24 t⁵ - 54/5 t⁶ + 16807/720 t⁷ - 16384/315 t⁸ + ...,
+// t < e^-6: the first term left out, 531441/4480 t⁹, is below 2e-19 of the result.
 function belowTable(x: number): number {
   const t = exp(x);
   const tail = 125 / 24 - t * (54 / 5 - t * (16807 / 720 - t * (16384 / 315)));
@@ -49,9 +52,12 @@ function belowTable(x: number): number {
 }
 
 function aboveTable(x: number): number {
-  if (!(x < Infinity)) return x;
+  // Here ln(omega) is ln x to within half its last place; NaN and Infinity answer themselves.
+  if (!(x < FAR_ABOVE)) return x < Infinity ? x - log(x) : x;
   return refine(refine(x - log(x), x), x);
 }
+
+const FAR_ABOVE = 1e18;
 
 function refine(w: number, x: number): number {
   const residual = x - w - log(w);
@@ -60,16 +66,16 @@ function refine(w: number, x: number): number {
   return w * (1 + ((residual / one) * (q - residual)) / (q - 2 * residual));
 }
 
-function buildTable(): Float64Array {
-  const knots = (TABLE_TO - TABLE_FROM) * KNOTS_PER_UNIT + 1;
-  const terms = new Float64Array(knots * TERMS);
-  for (let knot = 0; knot < knots; knot++) {
-    const x = TABLE_FROM + knot / KNOTS_PER_UNIT;
-    let w = x < 1 ? exp(x) / (1 + exp(x)) : x - log(x) + 0.3;
-    for (let pass = 0; pass < 4; pass++) w = refine(w, x);
-    fillSeries(terms.subarray(knot * TERMS, (knot + 1) * TERMS), w);
-  }
-  return terms;
+function afterFilling(knot: number, x: number): number {
+  const place = knot * (1 / KNOTS_PER_UNIT) + TABLE_FROM;
+  let w = place < 1 ? exp(place) / (1 + exp(place)) : place - log(place) + 0.3;
+  for (let pass = 0; pass < 3; pass++) w = refine(w, place);
+  // The residual above is a difference of numbers as large as x, this one of e^x: w + ln w - x
+  // to the last place even where x is large beside omega.
+  const power = w * exp(w);
+  w += (w * (exp(place) - power)) / (power * (1 + w));
+  fillSeries(table.subarray(knot * TERMS, (knot + 1) * TERMS), w);
+  return wrightOmega(x);
 }
 
 // omega' = omega / (1 + omega): (1 + omega) omega' = omega, compared power by power.

@@ -1,4 +1,5 @@
 import { Fault } from '../fault.js';
+import type { Quantizer } from '../fixed/quantizer.js';
 import { toCelsius, type Conditions } from '../quantities.js';
 import { globalPeak, type Curve, type Peak, type Source } from '../source/curve.js';
 import { placeVoltageCodes } from './point-placement.js';
@@ -11,6 +12,7 @@ import {
   type ColumnWish,
   type Product,
   type ProductFormats,
+  type Section,
 } from './product.js';
 
 export interface CurveSetPlan {
@@ -28,72 +30,91 @@ export interface CurveSetPlan {
  */
 export function curveSet(plan: CurveSetPlan): Product {
   const { formats, source, points } = plan;
-  const curves = layOut([
-    ...conditionColumns(source.groups, formats),
-    ...keyPointColumns(formats),
-    ...indexColumns(),
-  ]);
   const pointLayout = layOut([
     { name: 'voltage', quantity: 'voltage', format: formats.voltage },
     { name: 'current', quantity: 'current', format: formats.current },
   ]);
-  const peakLayout = layOut(peakColumns(formats));
   const voltage = pointLayout.columns[0]!.quantizer;
-  const tables = plan.conditions.map((conditions) => {
-    const curve = source.at(conditions);
-    const voltageCodes = atConditions(conditions, () =>
-      placeVoltageCodes(curve.openCircuitVoltage, points, voltage),
-    );
-    return { conditions, curve, peaks: curve.peaks(), voltageCodes };
-  });
-  const peaks = tables.flatMap((table) => table.peaks);
-  const firstPeaks = runningTotals(tables.map((table) => table.peaks.length));
-  return {
-    name: plan.name,
-    kind: 'curve-set',
-    sections: [
-      {
-        tag: 'CURV',
-        noun: 'curve',
-        ...curves,
-        count: tables.length,
-        values: (index, into) => {
-          into.set(curveValues(tables[index]!, index * points, points, firstPeaks[index]!));
-        },
-      },
-      {
-        tag: 'POIN',
-        noun: 'point',
-        ...pointLayout,
-        count: tables.length * points,
-        values: (index, into) => {
-          const table = tables[Math.floor(index / points)]!;
-          const volts = voltage.decode(table.voltageCodes[index % points]!);
-          into[0] = volts;
-          // Rounding may leave the last current a hair below zero.
-          into[1] = Math.max(table.curve.current(volts), 0);
-        },
-      },
-      {
-        tag: 'PEAK',
-        noun: 'peak',
-        ...peakLayout,
-        count: peaks.length,
-        values: (index, into) => {
-          const peak = peaks[index]!;
-          into[0] = peak.voltage;
-          into[1] = peak.current;
-          into[2] = peak.power;
-        },
-      },
-    ],
-  };
+  const tables = plan.conditions.map((conditions) => tabulate(source, conditions, points, voltage));
+  const curveLayout = layOut([
+    ...conditionColumns(source.groups, formats),
+    ...keyPointColumns(formats),
+    ...indexColumns(),
+  ]);
+  const sections = [
+    curveSection(tables, points, curveLayout),
+    pointSection(tables, points, pointLayout),
+    peakSection(tables, layOut(peakColumns(formats))),
+  ];
+  return { name: plan.name, kind: 'curve-set', sections };
 }
+
+type Layout = Pick<Section, 'columns' | 'recordSize'>;
 
 interface CurveTable {
   readonly conditions: Conditions;
   readonly curve: Curve;
   readonly peaks: readonly Peak[];
+  readonly voltageCodes: Float64Array;
+}
+
+function tabulate(
+  source: Source,
+  conditions: Conditions,
+  points: number,
+  voltage: Quantizer,
+): CurveTable {
+  const curve = source.at(conditions);
+  const voltageCodes = atConditions(conditions, () =>
+    placeVoltageCodes(curve.openCircuitVoltage, points, voltage),
+  );
+  return { conditions, curve, peaks: curve.peaks(), voltageCodes };
+}
+
+function curveSection(tables: readonly CurveTable[], points: number, layout: Layout): Section {
+  const firstPeaks = runningTotals(tables.map(({ peaks }) => peaks.length));
+  return {
+    tag: 'CURV',
+    noun: 'curve',
+    ...layout,
+    count: tables.length,
+    values: (index, into) => {
+      into.set(curveValues(tables[index]!, index * points, points, firstPeaks[index]!));
+    },
+  };
+}
+
+function pointSection(tables: readonly CurveTable[], points: number, layout: Layout): Section {
+  const voltage = layout.columns[0]!.quantizer;
+  return {
+    tag: 'POIN',
+    noun: 'point',
+    ...layout,
+    count: tables.length * points,
+    values: (index, into) => {
+      const { curve, voltageCodes } = tables[Math.floor(index / points)]!;
+      const volts = voltage.decode(voltageCodes[index % points]!);
+      into[0] = volts;
+      // Rounding may leave the last current a hair below zero.
+      into[1] = Math.max(curve.current(volts), 0);
+    },
+  };
+}
+
+function peakSection(tables: readonly CurveTable[], layout: Layout): Section {
+  const peaks = tables.flatMap((table) => table.peaks);
+  return {
+    tag: 'PEAK',
+    noun: 'peak',
+    ...layout,
+    count: peaks.length,
+    values: (index, into) => {
+      const peak = peaks[index]!;
+      into[0] = peak.voltage;
+      into[1] = peak.current;
+      into[2] = peak.power;
+    },
+  };
 }
 
 const indexColumns = (): ColumnWish[] => [

@@ -81,15 +81,15 @@ export function parseManifest(text: string, file: string): Manifest {
   if (sealOf(withSeal(text, OPEN_SEAL)) !== seal) {
     return refuse('has been changed since it was written: the seal does not match.');
   }
-  // Sealed text is text that manifestText wrote, so the shape is known.
-  const { seal: _, ...manifest } = JSON.parse(text) as Manifest & { seal: string };
-  if (manifest.manifest !== MANIFEST_VERSION) {
+  const { manifest: version, tool } = JSON.parse(text) as Manifest;
+  if (version !== MANIFEST_VERSION) {
     return refuse(
-      `has version ${manifest.manifest}, expected ${MANIFEST_VERSION}.`,
-      `It was written by ${manifest.tool.name} ${manifest.tool.version}.`,
+      `has version ${version}, expected ${MANIFEST_VERSION}.`,
+      `It was written by ${tool.name} ${tool.version}.`,
     );
   }
-  return manifest;
+  // Sealed text of this version is text that manifestText wrote, so its shape is known.
+  return JSON.parse(text) as Manifest;
 }
 
 /** Every file of the suite except the manifest. */

@@ -36,7 +36,7 @@ export interface PlannedProduct {
   readonly source: string;
   readonly outputs: readonly OutputForm[];
   /** Builds it afresh, with its counts of saturated values at zero. */
-  build(): Product;
+  readonly build: () => Product;
 }
 
 /** How a suite's other files are found: from their name in the suite file to a path. */

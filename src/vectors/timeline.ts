@@ -31,7 +31,9 @@ export function timeline(plan: TimelinePlan): Product {
     ...keyPointColumns(formats),
     ...peakColumns(formats),
   ]);
-  const conditions = writableConditions(source.groups);
+  const { groups } = source;
+  const rest = 1 + 2 * groups;
+  const conditions = writableConditions(groups);
   const { irradiance, cellTemperature } = conditions;
   return {
     name: plan.name,
@@ -47,17 +49,16 @@ export function timeline(plan: TimelinePlan): Product {
           weather.conditionsAt(time, conditions);
           const curve = source.at(conditions);
           const peak = globalPeak(curve.peaks());
-          let column = 0;
-          into[column++] = time;
-          for (let group = 0; group < source.groups; group++) {
-            into[column++] = irradiance[group]!;
-            into[column++] = toCelsius(cellTemperature[group]!);
+          into[0] = time;
+          for (let group = 0; group < groups; group++) {
+            into[1 + 2 * group] = irradiance[group]!;
+            into[2 + 2 * group] = toCelsius(cellTemperature[group]!);
           }
-          into[column++] = curve.shortCircuitCurrent;
-          into[column++] = curve.openCircuitVoltage;
-          into[column++] = peak.voltage;
-          into[column++] = peak.current;
-          into[column++] = peak.power;
+          into[rest] = curve.shortCircuitCurrent;
+          into[rest + 1] = curve.openCircuitVoltage;
+          into[rest + 2] = peak.voltage;
+          into[rest + 3] = peak.current;
+          into[rest + 4] = peak.power;
         },
       },
     ],

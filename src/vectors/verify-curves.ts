@@ -10,7 +10,9 @@ import type { Complain } from './verify-codes.js';
 export function checkCurveRules(file: VectorFile, complain: Complain): void {
   const section = (tag: string): ReadSection | undefined =>
     file.sections.find((candidate) => candidate.tag === tag);
-  const [curves, points, peaks] = [section('CURV'), section('POIN'), section('PEAK')];
+  const curves = section('CURV');
+  const points = section('POIN');
+  const peaks = section('PEAK');
   if (curves === undefined || points === undefined || peaks === undefined) {
     complain('CURV', undefined, 'a curve set has the sections CURV, POIN and PEAK.');
     return;
@@ -18,7 +20,6 @@ export function checkCurveRules(file: VectorFile, complain: Complain): void {
   const curveReader = columnReader(curves);
   const pointReader = columnReader(points);
   const peakReader = columnReader(peaks);
-  if (curveReader === undefined || pointReader === undefined || peakReader === undefined) return;
   let nextPoint = 0;
   let nextPeak = 0;
   for (let curve = 0; curve < curves.count; curve++) {

@@ -13,8 +13,8 @@ test.skipIf(browser === undefined)(
   async () => {
     const page = await (await launch()).newPage();
     try {
-      await page.evaluate(await bundle());
-      const checksum = await page.evaluate<number>('agreement.checksumOfAMillionResults()');
+      const script = `${await bundle()} agreement.checksumOfAMillionResults()`;
+      const checksum = await page.evaluate<number>(script);
       expect(checksum.toString(16)).toBe(GOLDEN_CHECKSUM.toString(16));
     } finally {
       await page.context().browser()?.close();

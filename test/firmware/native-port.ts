@@ -3,15 +3,16 @@ import { type ChildProcessWithoutNullStreams, spawn } from 'node:child_process';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { CLibrary, type Port } from './c-library.js';
-import { type CProgram, probeProgram } from './c-program.js';
+import { type CProgram, libraryIncludeDir, probeProgram } from './c-program.js';
 import { compileNative, type NativeOptions } from './native-build.js';
 
-const driver = join(fileURLToPath(new URL('.', import.meta.url)), 'driver.c');
+const here = fileURLToPath(new URL('.', import.meta.url));
 
 /** The probe behind the driver that serves it on stdin and stdout. */
 export const driverProgram: CProgram = {
   ...probeProgram,
-  sources: [...probeProgram.sources, driver],
+  sources: [...probeProgram.sources, join(here, 'driver.c')],
+  includeDirs: [libraryIncludeDir, here],
 };
 
 /**

@@ -129,6 +129,7 @@ describeEveryWay('the reader', (library) => {
       (file) => file.write('PION', channel(9)),
       HP.CHANNEL,
     ],
+    ['a column of CHAN itself', (file) => file.write('CHAN', channel(9)), HP.CHANNEL],
     ['a column that ends outside its record', (file) => add(file, channel(10) + 8, 2), HP.CHANNEL],
     [
       'a column far outside its record',

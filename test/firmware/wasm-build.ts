@@ -65,11 +65,16 @@ export async function compileWasm(
  * Checks the sources of a program under {@link STRICT_FLAGS} for a processor, as far as to the
  * types: clang knows the width of its int, whether or not it could write code for it.
  *
- * @param target As clang names it, such as `msp430` or `avr`.
+ * @param target As clang names it, such as `msp430`.
+ * @param more Further flags.
  * @throws Error with what the compiler said.
  */
-export async function checkSyntax(program: CProgram, target: string): Promise<void> {
-  const flags = [...STRICT_FLAGS, `--target=${target}`, '-ffreestanding', '-fsyntax-only'];
+export async function checkSyntax(
+  program: CProgram,
+  target: string,
+  more: readonly string[] = [],
+): Promise<void> {
+  const flags = [...STRICT_FLAGS, `--target=${target}`, ...more, '-ffreestanding', '-fsyntax-only'];
   const passed = cachePath('wasm-cache', `${fingerprint(program, clangVersion, flags)}.passed`);
   if (existsSync(passed)) return;
   await clang(program, flags);
@@ -113,7 +118,8 @@ async function clang(program: CProgram, flags: readonly string[]): Promise<Tree 
       /\bfolder(\d+)\//g,
       (_, k) => `${[...folders.keys()][Number(k)]!}/`,
     );
-    throw new Error(`clang refuses the program:\n${shown}`, { cause: error });
+    // Without the error as its cause: that holds the text of every file.
+    throw new Error(`clang refuses the program:\n${shown}`);
   }
 }
 

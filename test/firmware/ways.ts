@@ -1,7 +1,7 @@
 /** The ways in which the firmware library is compiled for the tests: each test runs in all. */
 import { afterAll, beforeAll, describe } from 'vitest';
 import type { CLibrary } from './c-library.js';
-import { canSanitize } from './native-build.js';
+import { canSanitize, findProgram } from './native-build.js';
 import { openNativeLibrary } from './native-port.js';
 import { openWasmLibrary } from './wasm-port.js';
 
@@ -13,12 +13,27 @@ export interface Way {
   readonly open: () => Promise<CLibrary>;
 }
 
+const bigEndian = {
+  compiler: findProgram('powerpc-linux-gnu-gcc'),
+  emulator: findProgram('qemu-ppc', 'qemu-ppc-static'),
+};
+
 const ways: readonly Way[] = [
   { name: 'to WebAssembly', missing: false, open: openWasmLibrary },
   {
     name: 'by the system compiler with sanitizers',
     missing: !canSanitize(),
     open: () => Promise.resolve(openNativeLibrary()),
+  },
+  {
+    name: 'for a big-endian processor and emulated',
+    missing: bigEndian.compiler === undefined || bigEndian.emulator === undefined,
+    open: () =>
+      Promise.resolve(
+        openNativeLibrary({}, { compiler: bigEndian.compiler!, flags: ['-static'] }, [
+          bigEndian.emulator!,
+        ]),
+      ),
   },
 ];
 

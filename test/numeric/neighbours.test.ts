@@ -8,7 +8,7 @@ describe('nextUp', () => {
   test.each([
     [0, Number.MIN_VALUE],
     [-0, Number.MIN_VALUE],
-    [-Number.MIN_VALUE, -0],
+    [-Number.MIN_VALUE, 0],
     [1, 1 + 2 ** -52],
     [-1, -1 + 2 ** -53],
     [1 - 2 ** -53, 1],
