@@ -58,7 +58,7 @@ const DEFAULTS: RootOptions = {};
  * @param f Continuous; may be ±Infinity, which counts by its sign.
  * @param low Finite, at most `high`.
  * @throws Fault ARGUMENT for ends or options out of range.
- * @example findRoot((x) => x * x - 2, 0, 2) // root 1.4142135623730951
+ * @example findRoot((x) => x * x - 4, 0, 3) // { status: 'converged', root: 2, residual: 0, … }
  */
 export function findRoot(
   f: (x: number) => number,
@@ -183,7 +183,7 @@ function isClosed(a: number, b: number, tolerance: number): boolean {
   return Math.abs(a - b) <= tolerance || between === a || between === b;
 }
 
-/** Rounded once, so that it is strictly between two doubles unless they are neighbours. */
+/** Rounded once, hence strictly between its arguments unless they are equal or neighbours. */
 function mean(a: number, b: number): number {
   const sum = a + b;
   return Math.abs(sum) < Infinity ? 0.5 * sum : 0.5 * a + 0.5 * b;

@@ -21,7 +21,7 @@ const TERMS = 9;
 const table = new Float64Array(((TABLE_TO - TABLE_FROM) * KNOTS_PER_UNIT + 1) * TERMS);
 
 /**
- * The w > 0 with w + ln w = x. Error at most 2 ulp, for subnormal results too.
+ * The w > 0 with w + ln w = x. Error at most 3 ulp, for subnormal results too.
  *
  *   x = -Inf  0        x = +Inf  +Inf        x = NaN  NaN
  *   x = 1     1        x < -745.1332191019411  0: omega is below half the smallest double

@@ -1,8 +1,8 @@
-import { exp } from '../numeric/exponential.js';
+import { expm1 } from '../numeric/exponential.js';
 import { log1p } from '../numeric/logarithm.js';
 import type { Volts } from '../quantities.js';
 import type { Peak } from './curve.js';
-import type { SingleDiode } from './single-diode.js';
+import { currentAtJunction, type SingleDiode } from './single-diode.js';
 
 /**
  * The peak of a single-diode curve: the one zero of dP/du for P = V(u) I(u), which reads
@@ -20,37 +20,42 @@ import type { SingleDiode } from './single-diode.js';
  */
 export function singleDiodePeak(diode: SingleDiode, openCircuitVoltage: Volts): Peak {
   if (!(openCircuitVoltage > 0)) return DARK;
-  const { photocurrent, saturationCurrent, idealityVoltage, seriesResistance } = diode;
-  const { shuntConductance } = diode;
-  const source = photocurrent + saturationCurrent;
-  let low = 0;
-  let high = openCircuitVoltage;
-  // Without shunt and series resistance the peak is near Voc - a ln(1 + Voc / a).
-  let u = openCircuitVoltage - idealityVoltage * log1p(openCircuitVoltage / idealityVoltage);
-  let current = 0;
-  for (let pass = 0; pass < MOST_PASSES; pass++) {
-    const diodeCurrent = saturationCurrent * exp(u / idealityVoltage);
-    const g = diodeCurrent / idealityVoltage + shuntConductance;
-    current = source - diodeCurrent - u * shuntConductance;
-    const gain = 1 + 2 * seriesResistance * g;
-    const f = current * gain - u * g;
-    if (f > 0) low = u;
-    else high = u;
-    const gSlope = diodeCurrent / (idealityVoltage * idealityVoltage);
-    const fSlope = 2 * seriesResistance * gSlope * current - g * gain - g - u * gSlope;
-    let next = u - f / fSlope;
-    if (!(next > low && next < high)) next = 0.5 * (low + high);
-    const step = next - u;
-    u = next;
-    if (Math.abs(step) <= SETTLED * u) break;
-  }
-  const diodeCurrent = saturationCurrent * exp(u / idealityVoltage);
-  current = source - diodeCurrent - u * shuntConductance;
+  const { seriesResistance } = diode;
+  const u = junctionAtPeak(diode, openCircuitVoltage);
+  const current = currentAtJunction(diode, u);
   const voltage = u - seriesResistance * current;
   return { voltage, current, power: voltage * current };
 }
 
 const DARK: Peak = { voltage: 0, current: 0, power: 0 };
-// Two ulp of u: where the rounding of f moves the zero.
-const SETTLED = 4e-16;
+
+function junctionAtPeak(diode: SingleDiode, openCircuitVoltage: Volts): Volts {
+  const { photocurrent, saturationCurrent, seriesResistance, shuntConductance } = diode;
+  const a = diode.idealityVoltage;
+  let low = 0;
+  let high = openCircuitVoltage;
+  // Without shunt and series resistance the peak is near Voc - a ln(1 + Voc / a).
+  let u = openCircuitVoltage - a * log1p(openCircuitVoltage / a);
+  for (let pass = 0; pass < MOST_PASSES; pass++) {
+    // expm1 serves both: where I0 is far above Iph, e^x - 1 in two steps would cost the current.
+    const growth = expm1(u / a);
+    const current = photocurrent - saturationCurrent * growth - u * shuntConductance;
+    const diodeConductance = (saturationCurrent / a) * (growth + 1);
+    const g = diodeConductance + shuntConductance;
+    const gain = 1 + 2 * seriesResistance * g;
+    const f = current * gain - u * g;
+    if (f > 0) low = u;
+    else high = u;
+    const fSlope = (diodeConductance / a) * (2 * seriesResistance * current - u) - g * (gain + 1);
+    const step = f / fSlope;
+    if (Math.abs(step) <= SETTLED * u) return u - step;
+    const next = u - step;
+    u = next > low && next < high ? next : 0.5 * (low + high);
+  }
+  return u;
+}
+
+// A Newton step of this share of u leaves an error of its square times u / a: below rounding.
+const SETTLED = 1e-9;
+// Newton needs 4 to 10; bisection alone would settle in 30.
 const MOST_PASSES = 100;

@@ -6,6 +6,8 @@
  */
 export interface Technology {
   readonly title: string;
+  /** Junctions stacked in one cell; their ideality factors add. */
+  readonly junctions: number;
   /** Band gap at 25 °C, in electronvolts. */
   readonly bandGap: number;
   /** Relative change of the band gap, 1/K. */
@@ -14,37 +16,47 @@ export interface Technology {
   readonly cellVoltage: readonly [least: number, most: number];
 }
 
-const SILICON = { bandGap: 1.121, bandGapSlope: -0.0002677, cellVoltage: [0.3, 1.3] } as const;
+const SILICON = {
+  junctions: 1,
+  bandGap: 1.121,
+  bandGapSlope: -0.0002677,
+  cellVoltage: [0.3, 1.3],
+} as const;
 
 export const TECHNOLOGIES = {
   'mono-si': { title: 'monocrystalline silicon', ...SILICON },
   'poly-si': { title: 'polycrystalline silicon', ...SILICON },
   cdte: {
     title: 'cadmium telluride',
+    junctions: 1,
     bandGap: 1.475,
     bandGapSlope: -0.0003,
     cellVoltage: [0.3, 1.4],
   },
   cis: {
     title: 'copper indium selenide',
+    junctions: 1,
     bandGap: 1.01,
     bandGapSlope: -0.00011,
     cellVoltage: [0.3, 1.1],
   },
   cigs: {
     title: 'copper indium gallium selenide',
+    junctions: 1,
     bandGap: 1.15,
     bandGapSlope: 0,
     cellVoltage: [0.3, 1.1],
   },
   gaas: {
     title: 'gallium arsenide',
+    junctions: 1,
     bandGap: 1.424,
     bandGapSlope: -0.000433,
     cellVoltage: [0.5, 1.5],
   },
   'a-si-triple': {
     title: 'triple-junction amorphous silicon',
+    junctions: 3,
     bandGap: 1.6,
     bandGapSlope: 0,
     cellVoltage: [1, 3],

@@ -138,11 +138,9 @@ class Compiler {
     return name === undefined ? inner : { ...inner, piece: new Span(name, inner.piece) };
   }
 
-  // Once for each place: a body is compiled for its first pass and for the later ones.
+  // One for each place, though a body is compiled for its first pass and for the later ones.
   #report(path: FieldPath, problem: Parameters<typeof fieldProblem>[2]): void {
-    const field = fieldText(path);
-    if (this.#problems.has(field)) return;
-    this.#problems.set(field, fieldProblem(this.#document, path, problem));
+    this.#problems.set(fieldText(path), fieldProblem(this.#document, path, problem));
   }
 }
 

@@ -37,7 +37,6 @@ export class Repetition implements Piece {
   }
 
   *marks(origin: Seconds, path: readonly string[]): Iterable<Mark> {
-    if (!this.marked) return;
     yield* this.#first.marks(origin, [...path, 'pass 1']);
     const start = origin + this.#first.duration;
     for (let passed = 0; passed < this.#times - 1; passed++) {

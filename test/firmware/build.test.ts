@@ -6,6 +6,7 @@ import { HP } from './c-library.js';
 import { libraryIncludeDir, librarySources, STRICT_FLAGS } from './c-program.js';
 import { canSanitize, compileNative, findProgram } from './native-build.js';
 import { driverProgram, openNativeLibrary } from './native-port.js';
+import { COMPILE_TIMEOUT } from './wasm-build.js';
 import { smallCurveSet } from './small-files.js';
 
 const header = readFileSync(join(libraryIncludeDir, 'hillproof.h'), 'utf8');
@@ -14,7 +15,7 @@ const run = (program: string, args: readonly string[]): { status: number | null;
   return { status, said: stdout + stderr };
 };
 
-describe('the C library', () => {
+describe('the C library', { timeout: COMPILE_TIMEOUT }, () => {
   for (const names of [['gcc'], ['clang', 'clang-14']]) {
     const compiler = findProgram(...names);
     test.skipIf(compiler === undefined)(`compiles without a warning: ${names[0]!}`, () => {

@@ -1,14 +1,18 @@
-import { uniformInt } from 'pure-rand/distribution/uniformInt';
-import { xoroshiro128plus } from 'pure-rand/generator/xoroshiro128plus';
-import { expect, test } from 'vitest';
+import { beforeAll, expect, test } from 'vitest';
 import type { CLibrary } from './c-library.js';
 import { HP } from './c-library.js';
-import { seal } from './image-builder.js';
+import { damagedFiles } from './damaged-files.js';
 import { smallCurveSet, smallTimeline } from './small-files.js';
+import { COMPILE_TIMEOUT } from './wasm-build.js';
 import { describeEveryWay } from './ways.js';
 import { openWasmLibrary } from './wasm-port.js';
 
 const files = { 'a curve set': smallCurveSet(), 'a timeline': smallTimeline() };
+
+let reference: CLibrary;
+beforeAll(async () => {
+  reference = await openWasmLibrary();
+}, COMPILE_TIMEOUT);
 
 describeEveryWay('the reader', (library) => {
   for (const [name, file] of Object.entries(files)) {
@@ -37,7 +41,6 @@ describeEveryWay('the reader', (library) => {
   }
 
   test('reads nothing outside 10 000 damaged files, and answers what WebAssembly answers', async () => {
-    const reference = await openWasmLibrary();
     for (const batch of damagedFiles(10_000, 42)) {
       const [found, expected] = await Promise.all([
         inspectAll(library(), batch),
@@ -49,10 +52,9 @@ describeEveryWay('the reader', (library) => {
 });
 
 test('the damaged files reach every check of the reader', async () => {
-  const library = await openWasmLibrary();
   const reached = new Set<number>();
   for (const batch of damagedFiles(10_000, 42)) {
-    for (const { open, check } of await inspectAll(library, batch)) reached.add(open || check);
+    for (const { open, check } of await inspectAll(reference, batch)) reached.add(open || check);
   }
   expect([...reached].sort((a, b) => b - a)).toEqual(VERDICTS);
 });
@@ -75,25 +77,3 @@ const flips = (file: Uint8Array, mask: number): Uint8Array[] =>
     copy[at]! ^= mask;
     return copy;
   });
-
-/**
- * Batches of files with 1 to 8 bytes changed, half of them to values that sizes and indexes turn
- * on. In three of four the CRCs match again, so that the deeper checks have to find the damage.
- */
-function* damagedFiles(count: number, seed: number): Generator<Uint8Array[]> {
-  const random = xoroshiro128plus(seed);
-  const below = (n: number): number => uniformInt(random, 0, n - 1);
-  const telling = [0, 1, 2, 3, 4, 7, 8, 16, 32, 48, 0x7f, 0x80, 0xfc, 0xff];
-  const originals = Object.values(files);
-  for (let done = 0; done < count; done += 500) {
-    yield Array.from({ length: 500 }, () => {
-      const copy = Uint8Array.from(originals[below(3) === 0 ? 1 : 0]!);
-      for (let left = 1 + below(8); left > 0; left--) {
-        // Behind the fields that are compared with a constant, mostly.
-        const at = below(16) === 0 ? below(copy.length) : 12 + below(copy.length - 12);
-        copy[at] = below(2) === 0 ? telling[below(telling.length)]! : below(256);
-      }
-      return below(4) === 0 ? copy : seal(copy);
-    });
-  }
-}

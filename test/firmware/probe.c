@@ -224,9 +224,9 @@ static uint32_t walk_curve(uint32_t hash, const struct hp_curve *walked)
     uint32_t voltage = 0;
 
     /* All orders of magnitude, upwards and downwards from both ends of the range of words. */
-    for (uint32_t shift = 0; shift < 32; shift++) {
-        hash = mix(hash, hp_curve_current(walked, 1U << shift));
-        hash = mix(hash, hp_curve_current(walked, 0U - (1U << shift)));
+    for (uint32_t bit = 1; bit != 0; bit <<= 1) {
+        hash = mix(hash, hp_curve_current(walked, bit));
+        hash = mix(hash, hp_curve_current(walked, ~bit));
     }
     /* At the points themselves, and next to them. */
     for (uint32_t index = 0; index < 32 && index < walked->points; index++) {

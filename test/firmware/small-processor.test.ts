@@ -7,9 +7,9 @@ import { cachePath, probeProgram, writeWhole } from './c-program.js';
 import { compileNative, findProgram } from './native-build.js';
 import { smallCurveSet, smallTimeline } from './small-files.js';
 import { openWasmLibrary } from './wasm-port.js';
-import { checkSyntax } from './wasm-build.js';
+import { checkSyntax, COMPILE_TIMEOUT } from './wasm-build.js';
 
-describe('for a processor whose int has 16 bits, the library', () => {
+describe('for a processor whose int has 16 bits, the library', { timeout: COMPILE_TIMEOUT }, () => {
   test('compiles without a warning for MSP430 and AVR', async () => {
     await checkSyntax(probeProgram, 'msp430');
     await checkSyntax(probeProgram, 'avr', ['-mmcu=atmega2560']);
@@ -27,9 +27,9 @@ describe('for a processor whose int has 16 bits, the library', () => {
           flags: ['-Os', '-mmcu=atmega2560'],
         });
         const args = ['-m', 'atmega2560', '-f', '16000000', program];
-        // It echoes what the processor prints, with a dot for each end of line.
-        const { stdout } = spawnSync(emulator!, args, { encoding: 'utf8' });
-        const printed = stdout.match(/[0-9a-f]{8}(?=\.)/g)?.map((word) => parseInt(word, 16));
+        // It echoes what the processor prints on stderr, with a dot for each end of line.
+        const { stderr } = spawnSync(emulator!, args, { encoding: 'utf8' });
+        const printed = stderr.match(/[0-9a-f]{8}(?=\.)/g)?.map((word) => parseInt(word, 16));
 
         const library = await openWasmLibrary();
         const { open, walk } = await library.inspect(file);

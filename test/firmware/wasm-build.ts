@@ -23,6 +23,12 @@ export interface WasmOptions {
   readonly exports?: readonly string[];
 }
 
+/**
+ * For tests that compile, in ms: a first compile takes seconds on an idle machine, but a minute on
+ * a busy one.
+ */
+export const COMPILE_TIMEOUT = 300_000;
+
 const LIBRARY_FLAGS = [
   '--target=wasm32',
   '-ffreestanding',
@@ -100,8 +106,8 @@ async function clang(program: CProgram, flags: readonly string[]): Promise<Tree 
   };
   // Without a listener of its own the first use reports its progress on stdout.
   await runLLVM(undefined, {}, { fetchProgress: () => undefined });
-  try {
-    return await commands.clang(
+  const outcome = await exitOf(() =>
+    commands.clang(
       [
         ...flags,
         ...defineFlags(program),
@@ -110,16 +116,24 @@ async function clang(program: CProgram, flags: readonly string[]): Promise<Tree 
       ],
       tree,
       { stdout: hear, stderr: hear },
-    );
+    ),
+  );
+  if (!(outcome instanceof Exit)) return outcome;
+  const text = Buffer.concat(said).toString('utf8');
+  const shown = text.replaceAll(
+    /\bfolder(\d+)\//g,
+    (_, k) => `${[...folders.keys()][Number(k)]!}/`,
+  );
+  throw new Error(`clang refuses the program:\n${shown}`);
+}
+
+/** What a command of clang gives, its refusal included. */
+async function exitOf<T>(command: () => T): Promise<Awaited<T> | Exit> {
+  try {
+    return await command();
   } catch (error) {
-    if (!(error instanceof Exit)) throw error;
-    const text = Buffer.concat(said).toString('utf8');
-    const shown = text.replaceAll(
-      /\bfolder(\d+)\//g,
-      (_, k) => `${[...folders.keys()][Number(k)]!}/`,
-    );
-    // Without the error as its cause: that holds the text of every file.
-    throw new Error(`clang refuses the program:\n${shown}`);
+    if (error instanceof Exit) return error;
+    throw error;
   }
 }
 

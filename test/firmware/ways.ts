@@ -3,6 +3,7 @@ import { afterAll, beforeAll, describe } from 'vitest';
 import type { CLibrary } from './c-library.js';
 import { canSanitize, findProgram } from './native-build.js';
 import { openNativeLibrary } from './native-port.js';
+import { COMPILE_TIMEOUT } from './wasm-build.js';
 import { openWasmLibrary } from './wasm-port.js';
 
 export interface Way {
@@ -48,7 +49,7 @@ export function describeEveryWay(title: string, tests: (library: () => CLibrary)
       let library: CLibrary;
       beforeAll(async () => {
         library = await open();
-      });
+      }, COMPILE_TIMEOUT);
       afterAll(() => library.close());
       tests(() => library);
     });

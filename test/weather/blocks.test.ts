@@ -53,6 +53,17 @@ describe('a weather', () => {
   });
 });
 
+describe('many blocks', () => {
+  it('begin at the sum of the times before them, free of the drift of a running sum', () => {
+    // 100 000 times 0.1 in plain doubles come to 10 000.0000000188.
+    const tenths = Array.from({ length: 100_000 }, () => hold(0.1));
+    const weather = weatherOf(...tenths, step({ irradiance_W_per_m2: 800 }), hold(1));
+    expect(weather.duration).toBe(10_001);
+    expect(irradianceAt(weather, 10_000)).toBe(800);
+    expect(irradianceAt(weather, 10_000 - 1e-9)).toBe(0);
+  });
+});
+
 describe('a step', () => {
   it('takes no time, and its new value holds at its own instant', () => {
     const weather = weatherOf(hold(2), step({ irradiance_W_per_m2: 800 }), hold(3));

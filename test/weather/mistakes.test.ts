@@ -275,7 +275,9 @@ const CASES: Readonly<Record<string, Case>> = {
 describe('a weather file is refused for', () => {
   it.each(Object.entries(CASES))('%s', (_title, { blocks, code, field, says, hint }) => {
     const [before, after] = `name: sky\nblocks:\n${blocks}\n`.split('^') as [string, string];
-    const [problem] = problemsOf(() => weatherIn(before + after));
+    const problems = problemsOf(() => weatherIn(before + after));
+    expect(problems).toHaveLength(1);
+    const [problem] = problems;
     const line = before.split('\n').length;
     const column = before.length - before.lastIndexOf('\n');
     expect(problem).toMatchObject({ code, file: 'sky.yaml', line, column, field });

@@ -1,17 +1,18 @@
-import { exp } from '../../numeric/exponential.js';
-import type { Ohms } from '../../quantities.js';
 import { argumentFault } from '../../fault.js';
-import { globalPeak } from '../curve.js';
 import type { Datasheet } from '../datasheet.js';
-import { junctionVoltage, type SingleDiode } from '../single-diode.js';
+import { globalPeak } from '../curve.js';
+import type { SingleDiode } from '../single-diode.js';
 import { SingleDiodeCurve } from '../single-diode-curve.js';
-import { IDEALITY_RANGE, idealityVoltageAtStc, type MethodOutcome } from './outcome.js';
+import { TECHNOLOGIES } from '../technology.js';
+import { closedForm } from './closed-form.js';
+import { IDEALITY_RANGE, signedPercent, type MethodOutcome } from './outcome.js';
 
 /** One row of the sweep: the closed form at one ideality factor, and what its curve misses. */
 export interface SweepCandidate {
+  /** A of one cell. */
   readonly ideality: number;
   readonly diode: SingleDiode;
-  /** False where the slope or the peak would need a negative series resistance. */
+  /** False where no positive series resistance or saturation current would do. */
   readonly feasible: boolean;
   /** (model - datasheet) / datasheet. */
   readonly openCircuitMiss: number;
@@ -22,13 +23,14 @@ export interface SweepCandidate {
   readonly badness: number;
 }
 
+/** Ideality factors of one junction, both ends included; a cell's is that of all its junctions. */
 export interface SweepRange {
   readonly from: number;
   readonly to: number;
   readonly step: number;
 }
 
-/** Two hundredths of a percent of power separate neighbours: finer than any datasheet. */
+/** Neighbours differ in peak power by less than a hundredth of a percent. */
 export const DEFAULT_SWEEP: SweepRange = {
   from: IDEALITY_RANGE[0],
   to: IDEALITY_RANGE[1],
@@ -36,23 +38,19 @@ export const DEFAULT_SWEEP: SweepRange = {
 };
 
 /**
- * The classical sweep: for each ideality factor A the closed form
+ * The classical sweep: a closed form at each ideality factor (see `closedForm`), of which the
+ * candidate is taken whose curve best meets open circuit and peak.
  *
- *     I0 = (Isc - Voc / Rsh) / exp(Voc / VT),   Iph = Isc (Rsh + Rs) / Rsh
- *
- * with Rsh from the slope at short circuit (none where no slope is given) and Rs from the slope at
- * open circuit, or from passing through the peak where no slope is given. The candidate whose
- * curve best meets open circuit and peak is taken.
- *
- * The closed form drops the -1 of the diode equation and Isc Rs / Rsh, so short and open circuit
- * are met to about 1e-5 and 1e-3, not exactly: the misses say by how much.
+ * Solved where its four misses together are below 1 %.
+ * @returns The best candidate as the outcome, and all of them in rising order of A.
  * @throws Fault `ARGUMENT` for a range that is empty, leaves 0.2 to 5 or has over 10,000 steps.
  */
 export function sweepIdeality(
   datasheet: Datasheet,
   range: SweepRange = DEFAULT_SWEEP,
 ): { readonly outcome: MethodOutcome; readonly candidates: readonly SweepCandidate[] } {
-  const candidates = idealities(range).map((ideality) => candidate(datasheet, ideality));
+  const { junctions } = TECHNOLOGIES[datasheet.technology];
+  const candidates = idealities(range).map((each) => candidate(datasheet, each * junctions));
   const better = (a: SweepCandidate, b: SweepCandidate): boolean =>
     a.feasible !== b.feasible ? a.feasible : a.badness < b.badness;
   const best = candidates.reduce((a, b) => (better(b, a) ? b : a));
@@ -70,56 +68,17 @@ function idealities({ from, to, step }: SweepRange): number[] {
   if (!(from >= 0.2 && to <= 5 && from <= to)) {
     throw argumentFault('range', 'a rising range within 0.2 to 5', `${from} to ${to}`);
   }
+  // The slack keeps `to` where the division falls just short of a whole number.
   const count = Math.floor((to - from) / step + 1e-9) + 1;
-  if (!(step > 0 && count <= 10_000)) throw argumentFault('step', 'at most 10,000 steps', step);
+  if (!(step > 0 && count <= 10_000)) {
+    throw argumentFault('step', 'above 0, with at most 10,000 of them in the range', step);
+  }
   return Array.from({ length: count }, (_, index) => from + index * step);
 }
 
 function candidate(datasheet: Datasheet, ideality: number): SweepCandidate {
-  const { slopeAtShortCircuit, shortCircuitCurrent, openCircuitVoltage } = datasheet;
-  const idealityVoltage = idealityVoltageAtStc(datasheet, ideality);
-  const closedForm = (seriesResistance: Ohms): SingleDiode => {
-    // The slope at short circuit shows Rs + Rsh.
-    const shuntConductance =
-      slopeAtShortCircuit === undefined
-        ? 0
-        : -slopeAtShortCircuit / (1 + slopeAtShortCircuit * seriesResistance);
-    return {
-      photocurrent: shortCircuitCurrent * (1 + seriesResistance * shuntConductance),
-      saturationCurrent:
-        (shortCircuitCurrent - openCircuitVoltage * shuntConductance) /
-        exp(openCircuitVoltage / idealityVoltage),
-      idealityVoltage,
-      seriesResistance,
-      shuntConductance,
-    };
-  };
-  let diode = closedForm(0);
-  // Rs moves the other parameters only through Rs / Rsh, so each pass gains about three digits.
-  for (let pass = 0; pass < 6; pass++) {
-    diode = closedForm(Math.max(seriesResistanceFor(datasheet, diode), 0));
-  }
-  return judge(datasheet, ideality, diode, seriesResistanceFor(datasheet, diode) >= 0);
-}
-
-function seriesResistanceFor(datasheet: Datasheet, diode: SingleDiode): Ohms {
-  const { slopeAtOpenCircuit, openCircuitVoltage, peakCurrent, peakVoltage } = datasheet;
-  if (slopeAtOpenCircuit === undefined) {
-    return (junctionVoltage(diode, peakCurrent) - peakVoltage) / peakCurrent;
-  }
-  const { saturationCurrent, idealityVoltage } = diode;
-  const diodeConductance =
-    (saturationCurrent / idealityVoltage) * exp(openCircuitVoltage / idealityVoltage);
-  return -1 / slopeAtOpenCircuit - 1 / (diodeConductance + diode.shuntConductance);
-}
-
-function judge(
-  datasheet: Datasheet,
-  ideality: number,
-  diode: SingleDiode,
-  feasible: boolean,
-): SweepCandidate {
   const { openCircuitVoltage, peakVoltage, peakCurrent } = datasheet;
+  const { diode, feasible } = closedForm(datasheet, ideality);
   const curve = new SingleDiodeCurve(diode);
   const peak = globalPeak(curve.peaks());
   const misses = {
@@ -133,11 +92,12 @@ function judge(
 }
 
 function account(best: SweepCandidate): string {
-  const percent = (miss: number): string => `${(100 * miss).toFixed(3)} %`;
   return (
-    `the best candidate has A = ${best.ideality.toFixed(3)}` +
-    (best.feasible ? '' : ' but would need a negative series resistance') +
-    ` and misses Voc by ${percent(best.openCircuitMiss)}, Vmp by ${percent(best.peakVoltageMiss)}, ` +
-    `Imp by ${percent(best.peakCurrentMiss)} and Pmp by ${percent(best.peakPowerMiss)}`
+    `the best candidate, A = ${best.ideality.toFixed(2)}` +
+    (best.feasible ? '' : ' (which would need a negative series resistance)') +
+    `, misses Voc by ${signedPercent(best.openCircuitMiss)}, ` +
+    `Vmp by ${signedPercent(best.peakVoltageMiss)}, ` +
+    `Imp by ${signedPercent(best.peakCurrentMiss)} and ` +
+    `Pmp by ${signedPercent(best.peakPowerMiss)}`
   );
 }

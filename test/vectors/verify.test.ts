@@ -1,0 +1,158 @@
+import { cpSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { createHash } from 'node:crypto';
+import { join } from 'node:path';
+import { beforeAll, describe, expect, test } from 'vitest';
+import type { Problem } from '../../src/fault.js';
+import { Fault } from '../../src/fault.js';
+import { crc32 } from '../../src/numeric/crc32.js';
+import { emitSuite } from '../../src/vectors/emit.js';
+import { listedFiles, manifestText, type Manifest } from '../../src/vectors/manifest.js';
+import { readManifest } from '../../src/vectors/suite-folder.js';
+import { verifySuite } from '../../src/vectors/verify.js';
+import { newFolder, writeInputs } from './small-suite.js';
+
+let inputs: string;
+let whole: string;
+let manifest: Manifest;
+
+beforeAll(() => {
+  inputs = newFolder();
+  whole = join(inputs, 'whole');
+  manifest = emitSuite(writeInputs(inputs), whole).manifest;
+});
+
+/** The problems that verify finds, whether it reports them or cannot even start. */
+function problemsOf(folder: string): readonly Problem[] {
+  try {
+    return verifySuite(folder).problems;
+  } catch (error) {
+    if (error instanceof Fault) return error.problems;
+    throw error;
+  }
+}
+
+function copyOf(folder: string): string {
+  const copy = join(newFolder(), 'copy');
+  cpSync(folder, copy, { recursive: true });
+  return copy;
+}
+
+const pathsOf = (suite: Manifest): string[] => [
+  'manifest.json',
+  ...listedFiles(suite).map(({ path }) => path),
+];
+
+/** Changes a file and makes hash and seal fit again, as a careful forger would. */
+function forge(folder: string, path: string, change: (bytes: Buffer) => void): void {
+  const bytes = readFileSync(join(folder, path));
+  change(bytes);
+  writeFileSync(join(folder, path), bytes);
+  const sha256 = createHash('sha256').update(bytes).digest('hex');
+  const relist = <T extends { readonly path: string }>(files: readonly T[]): T[] =>
+    files.map((file) => (file.path === path ? { ...file, sha256 } : file));
+  const old = readManifest(folder);
+  const products = old.products.map((product) => ({ ...product, files: relist(product.files) }));
+  const text = manifestText({ ...old, inputs: relist(old.inputs), products });
+  writeFileSync(join(folder, 'manifest.json'), text);
+}
+
+/** Adds to a byte of a section and repairs the CRC of the section. */
+function bend(bytes: Buffer, tag: string, at: number, by: number): void {
+  const entry = bytes.indexOf(tag, 32, 'latin1');
+  const [offset, size, count] = [4, 8, 12].map((field) => bytes.readUInt32LE(entry + field));
+  const end = offset! + size! * count!;
+  bytes[offset! + at] = (bytes[offset! + at]! + by) & 0xff;
+  bytes.writeUInt32LE(crc32(bytes.subarray(offset, end)), end);
+}
+
+describe('verify', () => {
+  test('finds nothing in a suite as emit left it', () => {
+    const { problems, checked } = verifySuite(whole);
+    expect(problems).toEqual([]);
+    expect(checked.map(({ count }) => count)).toEqual([15, 44, 12]);
+  });
+
+  test('names the file that is missing, and the file that is too many', () => {
+    const copy = copyOf(whole);
+    rmSync(join(copy, 'small-one-timeline.csv'));
+    writeFileSync(join(copy, 'notes.txt'), 'mine');
+    const found = problemsOf(copy).map(({ code, file }) => [code, file]);
+    expect(found).toContainEqual(['FILE_ABSENT', join(copy, 'small-one-timeline.csv')]);
+    expect(found).toContainEqual(['FILE_UNLISTED', join(copy, 'notes.txt')]);
+  });
+
+  test('names section and record of a code that is one step off, though all sums agree', () => {
+    const copy = copyOf(whole);
+    // Record 2 of POIN: voltage, current; the current's low byte is the third of its four bytes.
+    forge(copy, 'small-one-curves.hpv', (bytes) => {
+      bend(bytes, 'POIN', 2 * 4 + 2, 1);
+    });
+    const found = problemsOf(copy).find(({ code }) => code === 'RECORD');
+    expect(found?.field).toBe('section POIN, record 2');
+    expect(found?.message).toMatch(
+      /^current: code \d+ stands for .* the model says .*: off by [01]\.\d+ steps\.$/,
+    );
+  });
+
+  test('names the record where current rises with voltage', () => {
+    const copy = copyOf(whole);
+    forge(copy, 'small-one-curves.hpv', (bytes) => {
+      bend(bytes, 'POIN', 1 * 4 + 3, 3);
+    });
+    expect(problemsOf(copy).map(({ field, message }) => `${field}: ${message}`)).toContain(
+      'section POIN, record 1: the current rises with voltage.',
+    );
+  });
+
+  test('names a peak that is no peak', () => {
+    const copy = copyOf(whole);
+    forge(copy, 'small-one-curves.hpv', (bytes) => {
+      bend(bytes, 'PEAK', 5, 256 - 32);
+    });
+    const messages = problemsOf(copy).map(({ field, message }) => `${field}: ${message}`);
+    expect(messages).toContain(
+      'section PEAK, record 0: the power is not the product of voltage and current.',
+    );
+    expect(
+      messages.some((text) => /POIN, record \d: the power is above that of the global/.test(text)),
+    ).toBe(true);
+  });
+
+  test('names the sample that differs from the model', () => {
+    const copy = copyOf(whole);
+    forge(copy, 'small-one-timeline.hpv', (bytes) => {
+      bend(bytes, 'SAMP', bytes.readUInt32LE(bytes.indexOf('SAMP', 32) + 8) * 2 + 8, 2);
+    });
+    expect(problemsOf(copy).find(({ code }) => code === 'RECORD')?.field).toBe(
+      'section SAMP, record 2',
+    );
+  });
+
+  test('finds outputs that the inputs do not give, though all sums agree', () => {
+    const copy = copyOf(whole);
+    forge(copy, 'small-one-timeline.csv', (bytes) => {
+      bytes.write('9', bytes.length - 3);
+    });
+    expect(problemsOf(copy)).toEqual([
+      {
+        code: 'NOT_REPRODUCED',
+        file: join(copy, 'small-one-timeline.csv'),
+        message: 'the inputs do not give these bytes when built again.',
+      },
+    ]);
+  });
+
+  test('finds inputs that were changed after the fact, though all sums agree', () => {
+    // All outputs but the two C headers, which hold no figures, then come out differently.
+    const copy = copyOf(whole);
+    forge(copy, 'inputs/model.yaml', (bytes) => {
+      bytes.write('6', bytes.indexOf('photocurrent_A: 5') + 16);
+    });
+    expect(problemsOf(copy).filter(({ code }) => code === 'NOT_REPRODUCED')).toHaveLength(10);
+  });
+
+  test('refuses a folder that holds no suite', () => {
+    expect(problemsOf(inputs)[0]).toMatchObject({ code: 'NOT_A_SUITE', file: inputs });
+    expect(problemsOf(join(inputs, 'nowhere'))[0]?.message).toBe('there is no such folder.');
+  });
+});
