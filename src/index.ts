@@ -66,7 +66,14 @@ export { loadSource, parseSource, type SourceReading } from './source/source-fil
 // Weather.
 export { hold, ramp, repeat, sequence, step, trapezoids } from './weather/blocks.js';
 export { compileWeather, loadWeather, parseWeather, standardSequence } from './weather/load.js';
-export { writableConditions, type Weather, type WritableConditions } from './weather/weather.js';
+export {
+  writableConditions,
+  type Mark,
+  type Weather,
+  type WritableConditions,
+} from './weather/weather.js';
+export type { Block, WeatherDefinition } from './weather/definition.js';
+export { TRAPEZOID_TABLES, type TrapezoidTable } from './weather/trapezoid-tables.js';
 export { sampleCount } from './weather/sampling.js';
 
 // Tables.

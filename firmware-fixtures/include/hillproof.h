@@ -38,8 +38,8 @@ extern "C" {
 /* What a function returns. Zero is success, errors are below zero and never change their number. */
 enum hp_result {
     HP_OK = 0,
-    HP_ERR_LENGTH = -1,      /* Not as long as its header says: truncated, or a wrong length given. */
-    HP_ERR_MAGIC = -2,       /* Not a vector file, or one that passed through a text-mode transfer. */
+    HP_ERR_LENGTH = -1,      /* Not as long as its header says: cut, or a wrong length given. */
+    HP_ERR_MAGIC = -2,       /* Not a vector file, or changed by a transfer in text mode. */
     HP_ERR_VERSION = -3,     /* A format version or header size that this library does not know. */
     HP_ERR_HEADER_CRC = -4,  /* Header or directory damaged. */
     HP_ERR_DIRECTORY = -5,   /* Sections do not follow each other as the format says. */
@@ -185,7 +185,7 @@ struct hp_description {
     uint8_t width;    /* bits of a code, 1 to 8 * storage */
     uint8_t rounding; /* how the writer rounded: 0 half even, 1 half up, 2 to zero, 3 floor */
     uint8_t overflow; /* what the writer did out of range: 0 saturate, 1 refuse to write */
-    char name[16];    /* ends with a zero */
+    char name[16];    /* always ends with a zero */
 };
 
 /* Reads how a column counts and what it is called.

@@ -181,10 +181,7 @@ static int is_column(const struct hp_image *image, const uint8_t *channel)
     if (offset % storage != 0 || (uint32_t)offset + storage > table.record_size) {
         return 0;
     }
-    if (width < 1 || width > 8 * storage || hp_load_u8(channel + CHANNEL_SIGNED) > 1) {
-        return 0;
-    }
-    return hp_load_u8(channel + CHANNEL_NAME + NAME_SIZE - 1) == 0;
+    return width >= 1 && width <= 8 * storage && hp_load_u8(channel + CHANNEL_SIGNED) <= 1;
 }
 
 enum hp_result hp_find_table(const struct hp_image *image, uint32_t tag, struct hp_table *table)
@@ -283,7 +280,9 @@ void hp_describe(const struct hp_column *column, struct hp_description *descript
     description->width = hp_load_u8(channel + CHANNEL_WIDTH);
     description->rounding = hp_load_u8(channel + CHANNEL_ROUNDING);
     description->overflow = hp_load_u8(channel + CHANNEL_OVERFLOW);
-    for (unsigned index = 0; index < NAME_SIZE; index++) {
+    for (unsigned index = 0; index < NAME_SIZE - 1; index++) {
         description->name[index] = (char)hp_load_u8(channel + CHANNEL_NAME + index);
     }
+    /* The format has a zero here. Not taken on trust: a string without an end is read for ever. */
+    description->name[NAME_SIZE - 1] = 0;
 }

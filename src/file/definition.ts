@@ -77,19 +77,23 @@ function describe(issue: Issue, path: FieldPath, document: InputDocument): Probl
   return {
     code: 'INVALID_VALUE',
     ...place,
-    message: `must be ${expectation(issue)}, found ${show(found)}.`,
+    message: `must ${verb(issue)} ${expectation(issue)}, found ${show(found)}.`,
     ...(hint === undefined ? {} : { hint }),
   };
 }
+
+// A list or text has a size; everything else is what it is.
+const verb = (issue: Issue): string =>
+  'origin' in issue && (issue.origin === 'array' || issue.origin === 'string') ? 'have' : 'be';
 
 function expectation(issue: Issue): string {
   switch (issue.code) {
     case 'invalid_type':
       return NAMES_OF_TYPES[issue.expected] ?? `a ${issue.expected}`;
     case 'too_small':
-      return `${issue.inclusive === true ? 'at least' : 'above'} ${issue.minimum}${ofWhat(issue.origin)}`;
+      return `${issue.inclusive === true ? 'at least' : 'above'} ${issue.minimum}${ofWhat(issue.origin, issue.minimum)}`;
     case 'too_big':
-      return `${issue.inclusive === true ? 'at most' : 'below'} ${issue.maximum}${ofWhat(issue.origin)}`;
+      return `${issue.inclusive === true ? 'at most' : 'below'} ${issue.maximum}${ofWhat(issue.origin, issue.maximum)}`;
     case 'invalid_value':
       return issue.values.length === 1
         ? show(issue.values[0])
@@ -101,8 +105,12 @@ function expectation(issue: Issue): string {
   }
 }
 
-const ofWhat = (origin: string): string =>
-  origin === 'string' ? ' characters' : origin === 'array' ? ' entries' : '';
+function ofWhat(origin: string, count: number | bigint): string {
+  const one = Number(count) === 1;
+  if (origin === 'string') return one ? ' character' : ' characters';
+  if (origin === 'array') return one ? ' entry' : ' entries';
+  return '';
+}
 
 const NAMES_OF_TYPES: Readonly<Record<string, string>> = {
   number: 'a number',
@@ -125,9 +133,11 @@ function hintFor(issue: Issue, found: unknown): string | undefined {
 
 function show(found: unknown): string {
   if (found === null) return 'nothing';
-  if (Array.isArray(found)) return 'a list';
+  if (Array.isArray(found)) return `a list of ${found.length}`;
   if (typeof found === 'object') return 'a group of keys';
-  return typeof found === 'string' ? `"${found.slice(0, 60)}"` : JSON.stringify(found);
+  if (typeof found === 'string') return `"${found.slice(0, 60)}"`;
+  // JSON has no word for what is not finite.
+  return typeof found === 'number' ? String(found) : JSON.stringify(found);
 }
 
 const valueAt = (value: unknown, path: FieldPath): unknown =>

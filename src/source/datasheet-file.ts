@@ -1,64 +1,13 @@
 /** The datasheet file: what a user copies from a module's datasheet. */
-import { z } from 'zod';
 import { Fault, type Problem } from '../fault.js';
 import { interpret } from '../file/definition.js';
 import type { InputDocument } from '../file/document.js';
 import { fromCelsius } from '../quantities.js';
+import { datasheetDefinition, type DatasheetEntries } from './datasheet-definition.js';
 import { datasheetProblems } from './datasheet-plausibility.js';
 import type { Datasheet } from './datasheet.js';
-import { TECHNOLOGIES, type TechnologyName } from './technology.js';
 
-const technologyNames = Object.keys(TECHNOLOGIES) as [TechnologyName, ...TechnologyName[]];
-
-export const datasheetDefinition = z
-  .strictObject({
-    name: z.string().min(1).max(80).describe('Name of the module, for reports.'),
-    technology: z.enum(technologyNames).describe('Material of the cells.'),
-    cells_in_series: z
-      .int()
-      .min(1)
-      .max(400)
-      .describe('Cells in series. A half-cut module of 120 half cells has 60.'),
-    isc_A: z.number().positive().max(100).describe('Short-circuit current at STC.'),
-    voc_V: z.number().positive().max(1000).describe('Open-circuit voltage at STC.'),
-    imp_A: z.number().positive().max(100).describe('Current at the peak, at STC.'),
-    vmp_V: z.number().positive().max(1000).describe('Voltage at the peak, at STC.'),
-    alpha_isc_pct_per_K: z
-      .number()
-      .optional()
-      .describe('Temperature coefficient of Isc in %/K; give this or alpha_isc_mA_per_K.'),
-    alpha_isc_mA_per_K: z.number().optional().describe('The same in mA/K.'),
-    beta_voc_pct_per_K: z
-      .number()
-      .optional()
-      .describe('Temperature coefficient of Voc in %/K, negative; or give beta_voc_mV_per_K.'),
-    beta_voc_mV_per_K: z.number().optional().describe('The same in mV/K for the whole module.'),
-    gamma_pmp_pct_per_K: z
-      .number()
-      .optional()
-      .describe('Temperature coefficient of peak power in %/K, negative.'),
-    noct_C: z.number().optional().describe('Nominal operating cell temperature in °C.'),
-    slope_at_isc_A_per_V: z
-      .number()
-      .optional()
-      .describe('dI/dV of the curve at short circuit, zero or negative.'),
-    slope_at_voc_A_per_V: z
-      .number()
-      .optional()
-      .describe('dI/dV of the curve at open circuit, negative.'),
-    tolerance_pct: z
-      .number()
-      .min(0)
-      .max(50)
-      .optional()
-      .describe('Spread of peak power between modules, plus or minus, in %.'),
-  })
-  .meta({
-    title: 'Hillproof datasheet',
-    description: 'A PV module by the numbers of its datasheet, at STC.',
-  });
-
-export type DatasheetEntries = z.infer<typeof datasheetDefinition>;
+export { datasheetDefinition };
 
 /** A datasheet, and what in it is odd without being wrong. */
 export interface DatasheetReading {
@@ -66,7 +15,12 @@ export interface DatasheetReading {
   readonly warnings: readonly Problem[];
 }
 
-/** @throws Fault with every error of the file. */
+/**
+ * Checks a datasheet document against its definition, then for plausibility, and converts to SI.
+ * @throws Fault `UNKNOWN_KEY`, `MISSING_KEY`, `INVALID_VALUE`; then, of a file without those,
+ * `BOTH_FORMS`, `IMPOSSIBLE_VALUE`, `FILL_FACTOR`, `CELL_VOLTAGE`, `UNIT_SLIP`. Every error of the
+ * file is in it, with its place.
+ */
 export function parseDatasheet(document: InputDocument): DatasheetReading {
   const entries = interpret(document, datasheetDefinition);
   const { errors, warnings } = datasheetProblems(entries, document);

@@ -3,7 +3,7 @@ import { stringify } from 'yaml';
 import { z } from 'zod';
 import { interpret } from '../file/definition.js';
 import type { InputDocument } from '../file/document.js';
-import { STC_TEMPERATURE, thermalVoltage } from '../quantities.js';
+import { STC_TEMPERATURE, thermalVoltage, type Volts } from '../quantities.js';
 import { Module } from './module.js';
 import { TECHNOLOGIES, type TechnologyName } from './technology.js';
 
@@ -29,7 +29,7 @@ export const modelDefinition = z
     description: 'A PV module by the five parameters of its single-diode equation, at STC.',
   });
 
-/** @throws Fault with every error of the file. */
+/** @throws Fault `UNKNOWN_KEY`, `MISSING_KEY`, `INVALID_VALUE`: every error of the file. */
 export function parseModel(document: InputDocument): Module {
   const entries = interpret(document, modelDefinition);
   const { ideality_factor: ideality, shunt_resistance_ohm: shunt } = entries;
@@ -39,7 +39,7 @@ export function parseModel(document: InputDocument): Module {
     {
       photocurrent: entries.photocurrent_A,
       saturationCurrent: entries.saturation_current_A,
-      idealityVoltage: entries.cells_in_series * ideality * thermalVoltage(STC_TEMPERATURE),
+      idealityVoltage: ideality * perFactor(entries.cells_in_series),
       seriesResistance: entries.series_resistance_ohm,
       shuntConductance: shunt === 'infinite' ? 0 : 1 / shunt,
     },
@@ -60,8 +60,7 @@ export function modelText(module: Module): string {
     cells_in_series: module.cellsInSeries,
     photocurrent_A: reference.photocurrent,
     saturation_current_A: reference.saturationCurrent,
-    ideality_factor:
-      reference.idealityVoltage / (module.cellsInSeries * thermalVoltage(STC_TEMPERATURE)),
+    ideality_factor: reference.idealityVoltage / perFactor(module.cellsInSeries),
     series_resistance_ohm: reference.seriesResistance,
     shunt_resistance_ohm:
       reference.shuntConductance === 0 ? 'infinite' : 1 / reference.shuntConductance,
@@ -69,3 +68,6 @@ export function modelText(module: Module): string {
   };
   return stringify(entries);
 }
+
+/** a / A: in one place, so that writing and reading round alike. */
+const perFactor = (cellsInSeries: number): Volts => cellsInSeries * thermalVoltage(STC_TEMPERATURE);

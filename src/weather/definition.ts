@@ -9,7 +9,7 @@
 import { z } from 'zod';
 import { TRAPEZOID_TABLE_NAMES, USUAL_SETTLING } from './trapezoid-tables.js';
 
-export interface Range {
+interface Range {
   readonly minimum: number;
   readonly maximum: number;
 }
@@ -140,7 +140,7 @@ export const weatherDefinition = z
 
 export type WeatherDefinition = z.infer<typeof weatherDefinition>;
 export type Block = z.infer<typeof blockDefinition>;
-export type BlockName = keyof Block;
+type BlockName = keyof Block;
 export type Step = z.infer<typeof stepDefinition>;
 export type Ramp = z.infer<typeof rampDefinition>;
 export type Repeat = z.infer<typeof repeatDefinition>;

@@ -77,7 +77,8 @@ static int get_word(uint32_t *word)
     if (fread(bytes, 1, sizeof bytes, stdin) != sizeof bytes) {
         return 0;
     }
-    *word = bytes[0] | (uint32_t)bytes[1] << 8 | (uint32_t)bytes[2] << 16 | (uint32_t)bytes[3] << 24;
+    *word = bytes[0] | (uint32_t)bytes[1] << 8 | (uint32_t)bytes[2] << 16 |
+            (uint32_t)bytes[3] << 24;
     return 1;
 }
 

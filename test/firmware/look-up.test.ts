@@ -64,12 +64,13 @@ describeEveryWay('the look-up', (library) => {
     expect(Array.from(await library().interpolate(fives))).toEqual(expected);
   });
 
-  test('interpolates right up to the limit of its 16-bit path and just beyond', async () => {
-    const edges = [0xfffe, 0xffff, 0x1_0000, 0x1_0001];
-    const fives = edges.flatMap((drop) =>
-      edges.flatMap((span) =>
-        [1, 2, span >>> 1, (span >>> 1) + 1, span - 2, span - 1].map(
-          (distance) => [100, drop + 7, 100 + span, 7, 100 + distance] as const,
+  test('interpolates next to every power of two, of drop and of span, as the twin does', async () => {
+    const edges = Array.from({ length: 32 }, (_, bit) => [-1, 0, 1].map((by) => 2 ** bit + by));
+    const sizes = [...edges.flat(), 2 ** 32 - 1].filter((size) => size > 1);
+    const fives = sizes.flatMap((drop) =>
+      sizes.flatMap((span) =>
+        [1, Math.floor(span / 2), Math.floor(span / 2) + 1, span - 1].map(
+          (distance) => [0, drop, span, 0, distance] as const,
         ),
       ),
     );

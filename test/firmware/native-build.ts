@@ -42,9 +42,9 @@ const SANITIZER_FLAGS = [
 /** Whether the compiler of the system has the sanitizers, found by a trial. */
 export function canSanitize(): boolean {
   if (nativeCompiler === undefined) return false;
-  const source = cachePath('native-cache', 'empty.c');
-  writeWhole(source, Buffer.from('int main(void)\n{\n    return 0;\n}\n'));
   try {
+    const source = cachePath('native-cache', 'empty.c');
+    writeWhole(source, Buffer.from('int main(void)\n{\n    return 0;\n}\n'));
     return runNative(compileNative({ sources: [source] }, { sanitize: true })).status === 0;
   } catch {
     return false;

@@ -8,19 +8,19 @@
 enum probe_request {
     PROBE_CHECK = 1,       /* -                           -> result */
     PROBE_CURVE = 2,       /* index                       -> result (also of hp_find_curves), fields */
-    PROBE_CURRENTS = 3,    /* voltages                    -> currents, of the curve last selected */
+    PROBE_CURRENTS = 3,    /* voltages                    -> currents, of the curve selected */
     PROBE_INTERPOLATE = 4, /* (v0, i0, v1, i1, v) ...     -> i ... */
     PROBE_COLUMN = 5,      /* tag, quantity, group        -> result, column and its description */
     PROBE_READ = 6,        /* rows                        -> (result, word) ..., of that column */
     PROBE_WALK = 7,        /* -                           -> hash of all that can be asked */
     PROBE_CRC = 8,         /* bytes                       -> CRC, each byte fed on its own */
-    PROBE_SIGNS = 9        /* words                       -> (negative, magnitude, rank, back) ... */
+    PROBE_SIGNS = 9        /* words                       -> (negative, size, rank, back) ... */
 };
 
 /* Words that an answer may need: four for each word asked, and the fixed ones. */
 #define PROBE_ANSWER_WORDS(count) (4U * (count) + 32U)
 
-/* What every request but PROBE_INTERPOLATE, PROBE_CRC and PROBE_SIGNS answers while no file is open. */
+/* The answer to a request that needs an open file, or a curve or column selected, without one. */
 #define PROBE_CLOSED 1U
 
 /* Opens a file, or closes the one before if it is refused. Gives the result of hp_open. */

@@ -1,6 +1,6 @@
 import { expect, test } from 'vitest';
 import { HP } from './c-library.js';
-import { buildCurveSet, buildFile, seal, table } from './image-builder.js';
+import { buildCurveSet, buildFile, seal, type Section, table } from './image-builder.js';
 import { smallCurveSet, smallTimeline, timelineRows, twoCurves } from './small-files.js';
 import { describeEveryWay } from './ways.js';
 
@@ -54,6 +54,14 @@ describeEveryWay('the reader', (library) => {
     expect(description).toMatchObject({ step: 0.1, signed: false, name: 'irradiance_1' });
   });
 
+  test('ends a name that the file does not end', async () => {
+    const file = Buffer.from(smallTimeline());
+    // Two sections, so CHAN starts at 64; the name is at 32 in its record.
+    file.fill('x', 64 + 32, 64 + 48);
+    await openChecked(seal(file));
+    expect((await library().column('SAMP', 1)).description!.name).toBe('x'.repeat(15));
+  });
+
   test('does not find a table, a quantity or a group that is not there', async () => {
     await openChecked(smallTimeline());
     expect((await library().column('POIN', 1)).result).toBe(HP.NOT_FOUND);
@@ -88,8 +96,8 @@ describeEveryWay('the reader', (library) => {
   });
 
   test('skips sections, quantities and kinds that it does not know', async () => {
-    const { channels, section } = table('ZZZZ', [[7]], [{ quantity: 999, ...layouts[0] }]);
-    await openChecked(buildFile(77, channels, [section]));
+    const unknown = table('ZZZZ', [[7]], [{ quantity: 999, ...layouts[0] }]);
+    await openChecked(buildFile(77, unknown.channels, [unknown.section]));
     expect(await library().column('ZZZZ', 999)).toMatchObject({ result: HP.OK });
   });
 
@@ -99,6 +107,30 @@ describeEveryWay('the reader', (library) => {
       (x) => table(`SEC${x}`, [], [{ quantity: 1, ...layouts[0] }]).section,
     );
     await openChecked(buildFile(2, [], empty));
+  });
+
+  test('refuses a file of 17 sections, though they follow each other as they must', async () => {
+    const letters = 'ABCDEFGHIJKLMNOP'.split('');
+    const file = buildFile(2, [], letters.map((x) => section(`SEC${x}`, 4)));
+    expect(await library().open(file)).toBe(HP.DIRECTORY);
+  });
+
+  test('takes records of 4 to 1024 bytes in steps of 4, and no others', async () => {
+    const sizes = [4, 8, 1020, 1024, 2, 6, 1022, 1028];
+    const files = sizes.map((size) => buildFile(2, [], [section('SAMP', size)]));
+    const found = await Promise.all(files.map((file) => library().open(file)));
+    expect(found).toEqual(sizes.map((_, k) => (k < 4 ? HP.OK : HP.DIRECTORY)));
+  });
+
+  test('refuses to select a curve whose points or peaks lie outside, checked or not', async () => {
+    for (const quantity of [16, 17, 18, 19]) {
+      for (const value of [9, 0xffff_fffc]) {
+        const file = Buffer.from(smallCurveSet());
+        file.writeUInt32LE(value, curve(1, quantity));
+        expect(await library().open(seal(file))).toBe(HP.OK);
+        expect(await library().curve(1)).toEqual({ result: HP.INDEX });
+      }
+    }
   });
 
   const refusals: [what: string, damage: (file: Buffer) => void, open: number, check?: number][] = [
@@ -123,6 +155,12 @@ describeEveryWay('the reader', (library) => {
     ['a record too few', (file) => add(file, entry(3) + 12, -1), HP.DIRECTORY],
     ['records beyond 32 bits', (file) => add(file, entry(2) + 12, 2 ** 30), HP.DIRECTORY],
     ['2^32 - 1 records', (file) => file.writeUInt32LE(0xffff_ffff, entry(3) + 12), HP.DIRECTORY],
+    [
+      'a section behind the end whose size wraps to it',
+      (file) => wrapBehind(file, 0),
+      HP.DIRECTORY,
+    ],
+    ['a section whose CRC is behind the end', (file) => wrapBehind(file, 4), HP.DIRECTORY],
     ['a first section that is not CHAN', (file) => file.write('CHAM', entry(0)), HP.CHANNEL],
     [
       'a column of a section that is not there',
@@ -142,11 +180,6 @@ describeEveryWay('the reader', (library) => {
     ['a width of 0 bits', (file) => (file[channel(9) + 11] = 0), HP.CHANNEL],
     ['a width beyond the storage', (file) => (file[channel(9) + 11] = 17), HP.CHANNEL],
     ['a sign that is neither 0 nor 1', (file) => (file[channel(9) + 7] = 2), HP.CHANNEL],
-    [
-      'a name without an end',
-      (file) => file.fill('x', channel(9) + 32, channel(9) + 48),
-      HP.CHANNEL,
-    ],
     [
       'a curve set without voltages',
       (file) => file.writeUInt16LE(6, channel(9) + 4),
@@ -225,12 +258,27 @@ describeEveryWay('the reader', (library) => {
 const CLOSED = 1;
 const layouts = [twoCurves.voltage, twoCurves.current] as const;
 
+const section = (tag: string, recordSize: number): Section => ({
+  ...{ tag, recordSize, records: 1, bytes: new Uint8Array(recordSize) },
+});
+
 // Offsets in the small curve set: 4 sections, so CHAN starts at 96; 14 channels of 48 bytes.
 const entry = (section: number): number => 32 + 16 * section;
 const channel = (k: number): number => 96 + 48 * k;
 const CURVES = 96 + 48 * 14 + 4;
 const curve = (k: number, quantity: number): number => CURVES + 28 * k + 8 + 4 * (quantity - 16);
 const point = (k: number): number => CURVES + 28 * 2 + 4 + 4 * k;
+
+// Section 2 ends `beyond` bytes behind the end of the file; section 3 has a size of almost 2^32, so
+// that a sum without a check comes out at the end exactly.
+function wrapBehind(file: Buffer, beyond: number): void {
+  const size = file.length + beyond - 4 - file.readUInt32LE(entry(2) + 4);
+  file.writeUInt32LE(4, entry(2) + 8);
+  file.writeUInt32LE(size / 4, entry(2) + 12);
+  file.writeUInt32LE(file.length + beyond, entry(3) + 4);
+  file.writeUInt32LE(4, entry(3) + 8);
+  file.writeUInt32LE((2 ** 32 - 4 - beyond) / 4, entry(3) + 12);
+}
 
 // From -1 to 0: as words without their sign, these fall.
 function signedRise(file: Buffer): void {

@@ -9,6 +9,7 @@ import { translate } from '../../src/source/translation.js';
 export interface AnyModule {
   readonly technology: TechnologyName;
   readonly cellsInSeries: number;
+  /** Of one cell: from 1 to 2 for each junction. */
   readonly ideality: number;
   readonly diode: SingleDiode;
 }
@@ -16,13 +17,13 @@ export interface AnyModule {
 const NAMES = Object.keys(TECHNOLOGIES) as TechnologyName[];
 
 /**
- * 1 to 200 cells, A from 1 to 2, 5 mA to 20 A, every technology at its plausible cell voltages;
+ * 1 to 200 cells, A from 1 to 2 a junction, 5 mA to 20 A, every technology at its plausible cell voltages;
  * Rs from a millionth to a seventh of Voc / Isc or none, Rsh from 5 to 10^5 times that or infinite.
  */
 export function anyModule(random: Random): AnyModule {
   const technology = NAMES[random.integer(0, NAMES.length - 1)]!;
   const cellsInSeries = Math.round(logBetween(random, 1, 200));
-  const ideality = random.between(1, 2);
+  const ideality = random.between(1, 2) * TECHNOLOGIES[technology].junctions;
   const [least, most] = TECHNOLOGIES[technology].cellVoltage;
   const idealityVoltage = cellsInSeries * ideality * thermalVoltage(STC_TEMPERATURE);
   const openCircuitVoltage = cellsInSeries * random.between(least, most);

@@ -12,7 +12,12 @@ const PLACES = 320n;
 export const ONE: Fixed = 1n << PLACES;
 
 const Digits = Decimal.clone({ precision: 120 });
-const LN_2 = BigInt(new Digits(2).ln().times(new Digits(2).pow(Number(PLACES))).toFixed(0));
+const LN_2 = BigInt(
+  new Digits(2)
+    .ln()
+    .times(new Digits(2).pow(Number(PLACES)))
+    .toFixed(0),
+);
 
 /** A double as it is, not as its shortest decimal. Below 2^-267 its last bits are cut off. */
 export function fixed(x: number): Fixed {

@@ -37,11 +37,15 @@ export class ExactDiode {
     return { current, slope: -over(conductance, loss) };
   }
 
-  openCircuitVoltage(start: number): Fixed {
-    return newton(fixed(start), (u) => {
-      const { current, conductance } = this.#junction(u);
-      return over(current, -conductance);
+  /** Terminal voltage at a terminal current; at zero current, the open-circuit voltage. */
+  voltageAt(current: number, start: number): Fixed {
+    const i = fixed(current);
+    const drop = times(i, this.#rs);
+    const junctionVoltage = newton(fixed(start) + drop, (u) => {
+      const junction = this.#junction(u);
+      return over(junction.current - i, -junction.conductance);
     });
+    return junctionVoltage - drop;
   }
 
   /** The zero of dP/du = I + 2 Rs g I - u g, g = -dI/du. */

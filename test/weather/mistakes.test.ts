@@ -59,13 +59,13 @@ const CASES: Readonly<Record<string, Case>> = {
     blocks: '  ^[]',
     code: 'INVALID_VALUE',
     field: 'blocks',
-    says: /at least 1 entries/,
+    says: /must have at least 1 entry, found a list of 0/,
   },
   'a repeat of no blocks': {
     blocks: '  - repeat: { times: 2, blocks: ^[] }',
     code: 'INVALID_VALUE',
     field: 'blocks[0].repeat.blocks',
-    says: /at least 1 entries/,
+    says: /must have at least 1 entry, found a list of 0/,
   },
   'a hold of no time': {
     blocks: '  - hold: { for_s: ^0 }',

@@ -1,6 +1,7 @@
 import fc from 'fast-check';
 import { describe, expect, it } from 'vitest';
 import { sampleCount } from '../../src/weather/sampling.js';
+import { TIME_SLACK } from '../../src/weather/time-slack.js';
 import { problemsOf } from './reading.js';
 
 describe('the number of samples', () => {
@@ -55,5 +56,11 @@ describe('the number of samples', () => {
     expect(problemsOf(() => sampleCount(duration, period))).toMatchObject([
       { code: 'ARGUMENT', field },
     ]);
+  });
+});
+
+describe('the slack of times', () => {
+  it('is 256 roundings of a double', () => {
+    expect(TIME_SLACK).toBe(256 * 2 ** -53);
   });
 });

@@ -10,7 +10,7 @@ export interface Agreement {
   readonly field: AgreementField;
   readonly datasheet: number;
   readonly model: number;
-  /** (model - datasheet) / |datasheet|. */
+  /** (model - datasheet) / |datasheet|; the model's number itself where the datasheet says 0. */
   readonly miss: number;
 }
 

@@ -50,7 +50,8 @@ function withSeriesResistance(
   seriesResistance: Ohms,
 ): ClosedForm {
   const { shortCircuitCurrent, openCircuitVoltage, slopeAtShortCircuit = 0 } = datasheet;
-  const shown: Siemens = -slopeAtShortCircuit / (1 + slopeAtShortCircuit * seriesResistance);
+  const steepness = Math.abs(slopeAtShortCircuit);
+  const shown: Siemens = steepness / (1 - steepness * seriesResistance);
   const most: Siemens = (MOST_THROUGH_SHUNT * shortCircuitCurrent) / openCircuitVoltage;
   const feasible = shown >= 0 && shown <= most;
   const shuntConductance = feasible ? shown : most;

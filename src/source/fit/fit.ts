@@ -1,9 +1,10 @@
 import type { Problem } from '../../fault.js';
+import { exp } from '../../numeric/exponential.js';
 import type { Datasheet } from '../datasheet.js';
 import { Module } from '../module.js';
 import type { SingleDiode } from '../single-diode.js';
 import { agreements, type Agreement } from './agreement.js';
-import type { MethodOutcome } from './outcome.js';
+import { cellIdealityRange, type MethodOutcome } from './outcome.js';
 import { fitSimultaneously } from './simultaneous.js';
 import { sweepIdeality, type SweepCandidate } from './sweep.js';
 
@@ -29,38 +30,38 @@ export interface PracticeCheck {
 }
 
 /**
- * Fits the five parameters to a datasheet's numbers at STC.
- *
- * Without a method the simultaneous solution is taken, and where the datasheet admits none, the
- * best candidate of the sweep; a warning says so. The result never depends on a starting guess.
+ * Fits the five parameters to a datasheet's numbers at STC. The result never depends on a starting
+ * guess.
+ * @param method By default the simultaneous solution; where the datasheet admits none, the sweep,
+ * with a warning `NO_EXACT_SOLUTION`.
+ * @returns A Fit whose `solved` is false where the datasheet admits no solution; never a Fault.
  */
 export function fitDatasheet(datasheet: Datasheet, method?: FitMethod): Fit {
-  if (method === 'sweep') return sweepFit(datasheet, []);
+  if (method === 'sweep') return sweepFit(datasheet);
   const outcome = fitSimultaneously(datasheet);
   if (outcome.solved || method === 'simultaneous') {
-    return complete('simultaneous', datasheet, outcome, [], []);
+    return complete('simultaneous', datasheet, outcome);
   }
-  return sweepFit(datasheet, [
-    {
-      code: 'NO_EXACT_SOLUTION',
-      message: `the simultaneous conditions have no solution: ${outcome.account}`,
-      hint: 'The sweep meets them as well as it can; see which numbers it misses.',
-    },
-  ]);
+  const fit = sweepFit(datasheet);
+  return fit.solved
+    ? { ...fit, warnings: [noExactSolution(fit.account)] }
+    : { ...fit, account: `${fit.account}; ${outcome.account}` };
 }
 
-function sweepFit(datasheet: Datasheet, warnings: readonly Problem[]): Fit {
+function noExactSolution(account: string): Problem {
+  return {
+    code: 'NO_EXACT_SOLUTION',
+    message: `no curve meets this datasheet exactly; ${account}.`,
+    hint: 'It is used. `hillproof fit FILE --method simultaneous` says why none is exact.',
+  };
+}
+
+function sweepFit(datasheet: Datasheet): Fit {
   const { outcome, candidates } = sweepIdeality(datasheet);
-  return complete('sweep', datasheet, outcome, candidates, warnings);
+  return { ...complete('sweep', datasheet, outcome), candidates };
 }
 
-function complete(
-  method: FitMethod,
-  datasheet: Datasheet,
-  outcome: MethodOutcome,
-  candidates: readonly SweepCandidate[],
-  warnings: readonly Problem[],
-): Fit {
+function complete(method: FitMethod, datasheet: Datasheet, outcome: MethodOutcome): Fit {
   const module = moduleOf(datasheet, outcome.diode);
   return {
     method,
@@ -68,32 +69,32 @@ function complete(
     module,
     agreements: agreements(module, datasheet),
     practice: practiceChecks(datasheet, outcome),
-    warnings,
-    candidates,
+    warnings: [],
+    candidates: [],
   };
 }
 
-/** The module that a datasheet and five parameters at STC make together. */
-export function moduleOf(datasheet: Datasheet, diode: SingleDiode): Module {
+function moduleOf(datasheet: Datasheet, diode: SingleDiode): Module {
   const { name, cellsInSeries, technology, shortCircuitCoefficient } = datasheet;
   return new Module(name, cellsInSeries, diode, { technology, shortCircuitCoefficient });
 }
 
 function practiceChecks(datasheet: Datasheet, outcome: MethodOutcome): PracticeCheck[] {
   const { ideality, diode } = outcome;
+  const [least, most] = cellIdealityRange(datasheet);
   const checks: PracticeCheck[] = [
     {
-      says: 'ideality factor between 1 and 2',
+      says: `ideality factor between ${least} and ${most}`,
       value: ideality,
-      holds: ideality >= 1 && ideality <= 2,
+      holds: ideality >= least && ideality <= most,
     },
   ];
   if (datasheet.technology.endsWith('-si')) {
-    const growth = datasheet.shortCircuitCurrent / diode.saturationCurrent;
+    const growth = exp(datasheet.openCircuitVoltage / diode.idealityVoltage);
     checks.push({
       says: 'exp(Voc / VT) of order 1e9 for silicon (1e7 to 1e11)',
       value: growth,
-      holds: growth > 1e7 && growth < 1e11,
+      holds: growth >= 1e7 && growth <= 1e11,
     });
   }
   return checks;

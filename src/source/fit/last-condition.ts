@@ -1,5 +1,6 @@
 /** The series-resistance condition of the simultaneous solution, in its two forms. */
-import type { Amperes, Volts } from '../../quantities.js';
+import type { AmperesPerVolt } from '../../quantities.js';
+import { globalPeak } from '../curve.js';
 import type { Datasheet } from '../datasheet.js';
 import { slopeAtJunction, type SingleDiode } from '../single-diode.js';
 import { SingleDiodeCurve } from '../single-diode-curve.js';
@@ -17,53 +18,56 @@ export interface LastCondition {
 
 /** The slope at open circuit where the datasheet gives it, else no slope of power at the peak. */
 export function lastCondition(datasheet: Datasheet): LastCondition {
-  const { slopeAtOpenCircuit, openCircuitVoltage, peakVoltage, peakCurrent } = datasheet;
-  return slopeAtOpenCircuit === undefined
-    ? powerIsFlat(peakVoltage, peakCurrent, datasheet.slopeAtShortCircuit !== undefined)
-    : slopeIs(slopeAtOpenCircuit, openCircuitVoltage);
+  return datasheet.slopeAtOpenCircuit === undefined
+    ? powerIsFlat(datasheet)
+    : slopeIs(datasheet, datasheet.slopeAtOpenCircuit);
 }
 
-function slopeIs(slope: number, openCircuitVoltage: Volts): LastCondition {
+function slopeIs(datasheet: Datasheet, slope: AmperesPerVolt): LastCondition {
+  const { openCircuitVoltage } = datasheet;
   const miss = (diode: SingleDiode): number =>
     slopeAtJunction(diode, openCircuitVoltage) / slope - 1;
   return {
     name: 'the slope at open circuit',
     miss,
     describe: (diode) =>
-      `has a slope of ${slopeAtJunction(diode, openCircuitVoltage).toPrecision(4)} A/V at open ` +
-      `circuit instead of ${slope} A/V (${signedPercent(miss(diode))})`,
+      `has ${figures(slopeAtJunction(diode, openCircuitVoltage))} A/V at open circuit, not ` +
+      `${figures(slope)} A/V (${signedPercent(miss(diode))})`,
     suspects: {
       small: 'slope_at_voc_A_per_V too flat, or too many cells_in_series',
-      large: 'slope_at_voc_A_per_V too steep, or too few cells_in_series',
+      large: `slope_at_voc_A_per_V too steep, ${shuntSuspect(datasheet)}, or too few cells_in_series`,
     },
   };
 }
 
-function powerIsFlat(
-  peakVoltage: Volts,
-  peakCurrent: Amperes,
-  isShunted: boolean,
-): LastCondition {
+function powerIsFlat(datasheet: Datasheet): LastCondition {
+  const { peakVoltage, peakCurrent } = datasheet;
   return {
-    name: 'the flat top of power at Vmp',
+    name: 'power peaking there',
     // dP/dV = I + V dI/dV, over Imp.
     miss: (diode) => {
       const u = peakVoltage + peakCurrent * diode.seriesResistance;
       return 1 + (peakVoltage * slopeAtJunction(diode, u)) / peakCurrent;
     },
     describe: (diode) => {
-      const peak = new SingleDiodeCurve(diode).peaks()[0]!;
+      const peak = globalPeak(new SingleDiodeCurve(diode).peaks());
       const excess = peak.power / (peakVoltage * peakCurrent) - 1;
       return (
-        `passes through Vmp and Imp but peaks at ${peak.voltage.toPrecision(4)} V instead of ` +
-        `${peakVoltage} V, with ${signedPercent(excess)} of power`
+        `passes through the peak but has its own at ${figures(peak.voltage)} V, ` +
+        `${signedPercent(peak.voltage / peakVoltage - 1)} from Vmp, with ` +
+        `${signedPercent(excess)} of power`
       );
     },
     suspects: {
       small: 'imp_A too close to isc_A, or too many cells_in_series',
-      large: isShunted
-        ? 'slope_at_isc_A_per_V too flat, or too few cells_in_series'
-        : 'slope_at_isc_A_per_V left out, or too few cells_in_series',
+      large: `${shuntSuspect(datasheet)}, or too few cells_in_series`,
     },
   };
 }
+
+const shuntSuspect = (datasheet: Datasheet): string =>
+  datasheet.slopeAtShortCircuit === undefined
+    ? 'slope_at_isc_A_per_V left out'
+    : 'slope_at_isc_A_per_V too flat';
+
+const figures = (value: number): number => Number(value.toPrecision(4));

@@ -2,7 +2,7 @@ import { findRoot } from '../../numeric/root.js';
 import type { Datasheet } from '../datasheet.js';
 import type { SingleDiode } from '../single-diode.js';
 import { lastCondition, type LastCondition } from './last-condition.js';
-import { cellIdealityRange, signedPercent, type MethodOutcome } from './outcome.js';
+import { cellIdealityRange, type MethodOutcome } from './outcome.js';
 import { peakExcess, throughBothEnds, throughThreePoints } from './three-points.js';
 
 /**
@@ -24,17 +24,19 @@ import { peakExcess, throughBothEnds, throughThreePoints } from './three-points.
  */
 export function fitSimultaneously(datasheet: Datasheet): MethodOutcome {
   const condition = lastCondition(datasheet);
-  const range = cellIdealityRange(datasheet);
-  const nearest = search(datasheet, condition, range);
+  const nearest = search(datasheet, condition, cellIdealityRange(datasheet));
   if (nearest === undefined) return noCurve(datasheet, condition);
   const { ideality, diode } = nearest;
-  const solved = isMet(nearest);
-  const account = solved
-    ? `open circuit, peak and ${condition.name} are met together at A = ${ideality.toFixed(4)}`
-    : `no ideality factor from ${range.join(' to ')} meets open circuit, peak and ` +
-      `${condition.name} together; the nearest curve, A = ${ideality.toFixed(3)}, ` +
-      `${condition.describe(diode)}; ${metElsewhere(datasheet, condition)}`;
-  return { solved, ideality, diode, account };
+  const conditions = `open circuit, Imp at Vmp and ${condition.name}`;
+  if (isMet(nearest)) {
+    const account = `${conditions} are met together at A = ${ideality.toFixed(4)}`;
+    return { solved: true, ideality, diode, account };
+  }
+  const account =
+    `no A from ${cellIdealityRange(datasheet).join(' to ')} meets ${conditions} together; the ` +
+    `nearest curve, A = ${ideality.toFixed(3)}, ${condition.describe(diode)}; ` +
+    whatToLookFor(datasheet, condition, ideality);
+  return { solved: false, ideality, diode, account };
 }
 
 /** A curve through the three points, and what it misses of the last condition. */
@@ -79,20 +81,23 @@ function noCurve(datasheet: Datasheet, condition: LastCondition): MethodOutcome 
     ideality: least,
     diode: throughBothEnds(datasheet, least, 0),
     account:
-      `no ideality factor from ${least} to ${most} gives a curve as square as this datasheet; ` +
-      `the nearest, A = ${least} without series resistance, carries ` +
-      `${(100 * lack).toFixed(2)} % less than Imp at Vmp; ${metElsewhere(datasheet, condition)}`,
+      `no A from ${least} to ${most} gives a curve as square as this datasheet; the nearest, ` +
+      `A = ${least} without series resistance, carries ${(100 * lack).toFixed(2)} % less than ` +
+      `Imp at Vmp; ${whatToLookFor(datasheet, condition, least)}`,
   };
 }
 
-/** Where the three would be met, which tells what in the datasheet is likely to be wrong. */
-function metElsewhere(datasheet: Datasheet, condition: LastCondition): string {
+/** Where the conditions would be met, if anywhere, and what that says about the datasheet. */
+function whatToLookFor(
+  datasheet: Datasheet,
+  condition: LastCondition,
+  nearestIdeality: number,
+): string {
   const [least, most] = cellIdealityRange(datasheet);
   const elsewhere = search(datasheet, condition, [0.4 * least, 2 * most]);
-  if (elsewhere === undefined || !isMet(elsewhere)) {
-    return 'no other factor would do: check isc_A, voc_V, imp_A, vmp_V and the slopes';
-  }
-  const { ideality } = elsewhere;
-  const suspects = ideality < least ? condition.suspects.small : condition.suspects.large;
-  return `A = ${ideality.toFixed(3)} would do: look for ${suspects}`;
+  const { small, large } = condition.suspects;
+  const look = `look for ${nearestIdeality > least ? large : small}`;
+  return elsewhere !== undefined && isMet(elsewhere)
+    ? `A = ${elsewhere.ideality.toFixed(3)} would do: ${look}`
+    : `no other A would do: ${look}`;
 }

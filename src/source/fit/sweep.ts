@@ -93,7 +93,7 @@ function candidate(datasheet: Datasheet, ideality: number): SweepCandidate {
 
 function account(best: SweepCandidate): string {
   return (
-    `the best candidate, A = ${best.ideality.toFixed(2)}` +
+    `the best candidate of the sweep, A = ${Number(best.ideality.toFixed(4))}` +
     (best.feasible ? '' : ' (which would need a negative series resistance)') +
     `, misses Voc by ${signedPercent(best.openCircuitMiss)}, ` +
     `Vmp by ${signedPercent(best.peakVoltageMiss)}, ` +
