@@ -111,7 +111,11 @@ describeEveryWay('the reader', (library) => {
 
   test('refuses a file of 17 sections, though they follow each other as they must', async () => {
     const letters = 'ABCDEFGHIJKLMNOP'.split('');
-    const file = buildFile(2, [], letters.map((x) => section(`SEC${x}`, 4)));
+    const file = buildFile(
+      2,
+      [],
+      letters.map((x) => section(`SEC${x}`, 4)),
+    );
     expect(await library().open(file)).toBe(HP.DIRECTORY);
   });
 
