@@ -17,20 +17,27 @@ export class Module implements Source {
     readonly behaviour: TemperatureBehaviour,
   ) {}
 
-  /** @throws Fault `ARGUMENT` for irradiance outside 0 to 2000 W/m² or -60 to 120 °C. */
+  /**
+   * The curve under the conditions of the first group. At no irradiance it is that of the night:
+   * no current, no voltage, one peak of no power.
+   * @throws Fault `ARGUMENT` for irradiance outside 0 to 2000 W/m² or cells outside -60 to 120 °C.
+   */
   at(conditions: Conditions): SingleDiodeCurve {
     const irradiance = conditions.irradiance[0]!;
     const temperature = conditions.cellTemperature[0]!;
-    if (!(irradiance >= 0 && irradiance <= 2000)) {
-      throw argumentFault('irradiance', 'from 0 to 2000 W/m²', irradiance);
+    if (!(irradiance >= 0 && irradiance <= MOST_IRRADIANCE)) {
+      throw argumentFault('irradiance', `from 0 to ${MOST_IRRADIANCE} W/m²`, irradiance);
     }
-    if (!(temperature >= 213.15 && temperature <= 393.15)) {
-      throw argumentFault(
-        'cellTemperature',
-        'from 213.15 to 393.15 K (-60 to 120 °C)',
-        temperature,
-      );
+    if (!(temperature >= COLDEST - ROUNDING && temperature <= HOTTEST + ROUNDING)) {
+      const range = `from ${COLDEST} to ${HOTTEST} K (-60 to 120 °C)`;
+      throw argumentFault('cellTemperature', range, temperature);
     }
     return new SingleDiodeCurve(translate(this.reference, this.behaviour, irradiance, temperature));
   }
 }
+
+const MOST_IRRADIANCE = 2000;
+const COLDEST = 213.15;
+const HOTTEST = 393.15;
+/** -60 °C is 213.14999999999998 K once it has been through a sum. */
+const ROUNDING = 1e-9;
