@@ -39,4 +39,5 @@ const WORLD_REASONS: Readonly<Record<string, string>> = {
   EACCES: 'access is not permitted.',
   EPERM: 'access is not permitted.',
   EROFS: 'the disk can only be read.',
+  EEXIST: 'something of that name is in the way.',
 };
