@@ -57,8 +57,14 @@ export { TECHNOLOGIES, type TechnologyName } from './source/technology.js';
 export { Module } from './source/module.js';
 export type { Datasheet } from './source/datasheet.js';
 export { parseDatasheet, type DatasheetReading } from './source/datasheet-file.js';
-export { fitDatasheet, FIT_METHODS, type Fit, type FitMethod } from './source/fit/fit.js';
-export type { Agreement } from './source/fit/agreement.js';
+export {
+  fitDatasheet,
+  FIT_METHODS,
+  type Fit,
+  type FitMethod,
+  type PracticeCheck,
+} from './source/fit/fit.js';
+export type { Agreement, AgreementField } from './source/fit/agreement.js';
 export { DEFAULT_SWEEP, sweepIdeality, type SweepCandidate } from './source/fit/sweep.js';
 export { modelText, parseModel } from './source/model-file.js';
 export { loadSource, parseSource, type SourceReading } from './source/source-file.js';

@@ -52,7 +52,7 @@ const errColours = coloursFor(process.stderr);
 export const showsUnicode = (): boolean =>
   /utf-?8/i.test(process.env['LC_ALL'] ?? process.env['LC_CTYPE'] ?? process.env['LANG'] ?? '');
 
-export const EXIT_CODES = { input: 2, check: 1, world: 3 } as const;
+const EXIT_CODES = { input: 2, check: 1, world: 3 } as const;
 
 /** Prints what went wrong and gives the exit code. */
 export function reportFault(error: unknown, asJson: boolean): number {

@@ -2,7 +2,7 @@
  * The word of `known` that is nearest to `word` by edit distance, or undefined if none is near
  * enough to be what the writer meant (more than a third of the letters differ).
  */
-export function nearest(word: string, known: readonly string[]): string | undefined {
+function nearest(word: string, known: readonly string[]): string | undefined {
   let best: string | undefined;
   let bestDistance = Infinity;
   for (const candidate of known) {

@@ -50,7 +50,7 @@ const PROVENANCE = 'Written by hillproof emit. Do not edit: change the suite and
 const LARGEST_OBJECT = 65_535;
 
 /** Lower-case letters, digits and underscores. */
-export const cIdentifier = (name: string): string => name.toLowerCase().replace(/[^a-z0-9]/g, '_');
+const cIdentifier = (name: string): string => name.toLowerCase().replace(/[^a-z0-9]/g, '_');
 
 /** @throws Fault `C_OBJECT_TOO_LARGE`. */
 export function refuseLargeObjects(product: Product): void {

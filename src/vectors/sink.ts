@@ -39,7 +39,7 @@ export function pour(product: Product, sinks: readonly Sink[], progress?: Progre
 const RECORDS_PER_REPORT = 16_384;
 
 /** Computes and encodes records of a section; the array it returns is reused. */
-export function recordEncoder(section: Section): (index: number) => Float64Array {
+function recordEncoder(section: Section): (index: number) => Float64Array {
   const { columns } = section;
   const values = new Float64Array(columns.length);
   const codes = new Float64Array(columns.length);

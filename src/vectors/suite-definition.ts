@@ -2,7 +2,7 @@
 import { z } from 'zod';
 import { codeFormatDefinition } from '../fixed/file-definition.js';
 
-export const OUTPUT_FORMS = ['binary', 'c', 'csv', 'json'] as const;
+const OUTPUT_FORMS = ['binary', 'c', 'csv', 'json'] as const;
 export type OutputForm = (typeof OUTPUT_FORMS)[number];
 
 const outputs = z

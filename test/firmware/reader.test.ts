@@ -161,10 +161,18 @@ describeEveryWay('the reader', (library) => {
     ['2^32 - 1 records', (file) => file.writeUInt32LE(0xffff_ffff, entry(3) + 12), HP.DIRECTORY],
     [
       'a section behind the end whose size wraps to it',
-      (file) => { wrapBehind(file, 0); },
+      (file) => {
+        wrapBehind(file, 0);
+      },
       HP.DIRECTORY,
     ],
-    ['a section whose CRC is behind the end', (file) => { wrapBehind(file, 4); }, HP.DIRECTORY],
+    [
+      'a section whose CRC is behind the end',
+      (file) => {
+        wrapBehind(file, 4);
+      },
+      HP.DIRECTORY,
+    ],
     ['a first section that is not CHAN', (file) => file.write('CHAM', entry(0)), HP.CHANNEL],
     [
       'a column of a section that is not there',

@@ -17,7 +17,7 @@ shunt_resistance_ohm: 300
 alpha_isc_A_per_K: 0.0025
 `;
 
-export const SMALL_WEATHER = `name: Small
+const SMALL_WEATHER = `name: Small
 irradiance_W_per_m2: 500
 blocks: [{ ramp: { irradiance_W_per_m2: 900, for_s: 2 } }]
 `;
