@@ -12,6 +12,7 @@ import { quantityOfId, type QuantityName } from './quantity.js';
 
 export interface ReadColumn {
   readonly name: string;
+  readonly quantityId: number;
   /** Undefined for a quantity that this version does not know. */
   readonly quantity: QuantityName | undefined;
   readonly group: number;
@@ -71,6 +72,7 @@ export function toColumn(
 ): ReadColumn {
   const { offset, storage, bits, signed, step, origin } = record;
   const name = withoutPadding(record.name);
+  const padding = record.name.slice(name.length);
   const rounding = ROUNDING_IDS[record.rounding];
   const overflow = OVERFLOW_IDS[record.overflow];
   const fits =
@@ -84,12 +86,7 @@ export function toColumn(
     step > 0 &&
     step < Infinity &&
     Number.isFinite(origin);
-  if (
-    !fits ||
-    rounding === undefined ||
-    overflow === undefined ||
-    name.length >= COLUMN_NAME_SIZE
-  ) {
+  if (!fits || rounding === undefined || overflow === undefined || !/^\0+$/.test(padding)) {
     return refuse(
       `column ${show(name)} is not one that fits its record.`,
       `section ${section.tag}`,
@@ -106,16 +103,28 @@ export function toColumn(
     label: `${signed === 1 ? 'signed' : 'unsigned'} ${bits} bits`,
   };
   const { quantity, group } = record;
-  return { name, quantity: quantityOfId(quantity), group, format, offset, storage };
+  return {
+    ...{ name, group, format, offset, storage },
+    quantityId: quantity,
+    quantity: quantityOfId(quantity),
+  };
 }
 
-/** No two columns of a section share a byte. */
-export function refuseOverlap(columns: readonly ReadColumn[], tag: string, refuse: Refuse): void {
+/** No two columns of a section share a byte, or a quantity and group. */
+export function refuseClashes(columns: readonly ReadColumn[], tag: string, refuse: Refuse): void {
   const ordered = columns.toSorted((a, b) => a.offset - b.offset);
   ordered.slice(1).forEach((column, index) => {
     const before = ordered[index]!;
     if (before.offset + before.storage > column.offset) {
       refuse(`columns ${before.name} and ${column.name} overlap.`, `section ${tag}`);
+    }
+  });
+  columns.forEach((column, index) => {
+    const twin = columns.findIndex(
+      ({ quantityId, group }) => quantityId === column.quantityId && group === column.group,
+    );
+    if (twin !== index) {
+      refuse(`columns ${columns[twin]!.name} and ${column.name} mean the same.`, `section ${tag}`);
     }
   });
 }

@@ -1,6 +1,6 @@
 /** Reads vector files back, refusing everything that `vectors/FORMAT.md` says a reader must. */
 import { Fault, type Problem } from '../fault.js';
-import { readColumnRecords, refuseOverlap, toColumn, type ReadColumn } from './binary-columns.js';
+import { readColumnRecords, refuseClashes, toColumn, type ReadColumn } from './binary-columns.js';
 import { checkSectionCrcs, readHead, type DirectoryEntry, type Refuse } from './binary-head.js';
 import { COLUMN_TAG } from './binary-layout.js';
 import type { ProductKind } from './product.js';
@@ -64,7 +64,7 @@ function toSection(
   columns: readonly ReadColumn[],
   refuse: Refuse,
 ): ReadSection {
-  refuseOverlap(columns, tag, refuse);
+  refuseClashes(columns, tag, refuse);
   const view = new DataView(bytes.buffer, bytes.byteOffset, bytes.byteLength);
   return {
     tag,

@@ -15,7 +15,9 @@ function textsOf(product: Product, form: OutputForm): Record<string, string> {
   const texts: Record<string, string> = {};
   const sinks = sinksFor(product, [form], (path) => {
     texts[path] = '';
-    return (chunk) => (texts[path] += Buffer.from(chunk).toString('utf8'));
+    return (chunk) => {
+      texts[path] = texts[path]! + Buffer.from(chunk).toString('utf8');
+    };
   });
   pour(product, sinks);
   return texts;

@@ -41,7 +41,8 @@ function slopeIs(datasheet: Datasheet, slope: AmperesPerVolt): LastCondition {
 }
 
 function powerIsFlat(datasheet: Datasheet): LastCondition {
-  const { peakVoltage, peakCurrent } = datasheet;
+  const { peakVoltage, peakCurrent, slopeAtShortCircuit } = datasheet;
+  const steepShunt = slopeAtShortCircuit === undefined ? '' : 'slope_at_isc_A_per_V too steep, ';
   return {
     name: 'power peaking there',
     // dP/dV = I + V dI/dV, over Imp.
@@ -59,7 +60,7 @@ function powerIsFlat(datasheet: Datasheet): LastCondition {
       );
     },
     suspects: {
-      small: 'imp_A too close to isc_A, or too many cells_in_series',
+      small: `${steepShunt}imp_A too close to isc_A, or too many cells_in_series`,
       large: `${shuntSuspect(datasheet)}, or too few cells_in_series`,
     },
   };

@@ -13,7 +13,8 @@ import { peakExcess, throughBothEnds, throughThreePoints } from './three-points.
  *     series resistance   dI/dV at open circuit is the given slope; where no slope is given,
  *                         dP/dV at Vmp is zero, so that the curve peaks at the datasheet's peak
  *
- * Short circuit fixes Iph, and the slope at short circuit Rsh (no shunt path where none is given).
+ * Short circuit fixes Iph, and the slope at short circuit Rsh. There is no shunt path where no slope
+ * is given, or one flatter than the diode alone makes it.
  *
  * The three are not handed to a multidimensional iteration. Each A has one curve through the three
  * points or none, and has one up to some largest A; along these curves the last condition runs

@@ -169,6 +169,13 @@ describe('fitSimultaneously, given any plausible datasheet,', () => {
         expect(Math.abs(curve.current(sheet.peakVoltage) / sheet.peakCurrent - 1)).toBeLessThan(
           1e-9,
         );
+        const { slopeAtShortCircuit: flat } = sheet;
+        if (flat !== undefined && fit.diode.shuntConductance > 0) {
+          expect(Math.abs(curve.slope(0) / flat - 1)).toBeLessThan(1e-9);
+        } else if (flat !== undefined) {
+          // Flatter than the diode alone makes it.
+          expect(curve.slope(0)).toBeLessThanOrEqual(flat);
+        }
         if (sheet.slopeAtOpenCircuit === undefined) {
           const peak = globalPeak(curve.peaks());
           expect(Math.abs(peak.voltage / sheet.peakVoltage - 1)).toBeLessThan(2e-9);

@@ -1,0 +1,144 @@
+import { describe, expect, test } from 'vitest';
+import { STC_TEMPERATURE, uniformConditions } from '../../../src/quantities.js';
+import { globalPeak } from '../../../src/source/curve.js';
+import type { Datasheet } from '../../../src/source/datasheet.js';
+import { FIT_METHODS, fitDatasheet } from '../../../src/source/fit/fit.js';
+import { SingleDiodeCurve } from '../../../src/source/single-diode-curve.js';
+
+const SHEET: Datasheet = {
+  name: '54 cells',
+  technology: 'poly-si',
+  cellsInSeries: 54,
+  shortCircuitCurrent: 8.21,
+  openCircuitVoltage: 32.9,
+  peakCurrent: 7.61,
+  peakVoltage: 26.3,
+  shortCircuitCoefficient: 0.0032,
+  openCircuitCoefficient: -0.123,
+  peakPowerCoefficient: -0.0047,
+};
+/** No curve is exact, but the sweep comes near: the slope at short circuit is a little too steep. */
+const NEARLY: Datasheet = { ...SHEET, slopeAtShortCircuit: -0.008 };
+/** Far too many cells. */
+const HOPELESS: Datasheet = { ...SHEET, cellsInSeries: 100, slopeAtShortCircuit: -0.015 };
+
+describe('fitDatasheet', () => {
+  test('takes the simultaneous solution where there is one', () => {
+    const fit = fitDatasheet(SHEET);
+    expect(fit.method).toBe('simultaneous');
+    expect(fit.solved).toBe(true);
+    expect(fit.warnings).toEqual([]);
+    expect(fit.candidates).toEqual([]);
+  });
+
+  test('takes the best of the sweep where there is none, and says so in two lines', () => {
+    const fit = fitDatasheet(NEARLY);
+    expect(fit.method).toBe('sweep');
+    expect(fit.solved).toBe(true);
+    expect(fit.candidates).toHaveLength(101);
+    expect(fit.warnings).toHaveLength(1);
+    const { code, message, hint } = fit.warnings[0]!;
+    expect(code).toBe('NO_EXACT_SOLUTION');
+    expect(message).toMatch(
+      /^no curve meets this datasheet exactly; the best candidate of the sweep/,
+    );
+    expect(message.length).toBeLessThan(200);
+    expect(hint).toMatch(/^It is used\. `hillproof fit FILE --method simultaneous` says why/);
+  });
+
+  test('says unsolved where the sweep comes near no more, and why', () => {
+    const fit = fitDatasheet(HOPELESS);
+    expect(fit.method).toBe('sweep');
+    expect(fit.solved).toBe(false);
+    expect(fit.warnings).toEqual([]);
+    expect(fit.account).toMatch(
+      /^the best candidate of the sweep, A = 1 .*, misses Voc by .*; no A from 1 to 2/,
+    );
+  });
+
+  test('keeps to the method asked for, solved or not', () => {
+    for (const method of FIT_METHODS) {
+      expect(fitDatasheet(SHEET, method)).toMatchObject({ method, solved: true });
+      expect(fitDatasheet(HOPELESS, method)).toMatchObject({ method, solved: false });
+    }
+    expect(fitDatasheet(NEARLY, 'simultaneous').solved).toBe(false);
+    expect(fitDatasheet(NEARLY, 'sweep').warnings).toEqual([]);
+  });
+
+  test('makes a module of the datasheet, whose curve at STC is that of the diode', () => {
+    const { module, diode } = fitDatasheet(SHEET);
+    expect(module.name).toBe('54 cells');
+    expect(module.cellsInSeries).toBe(54);
+    expect(module.reference).toBe(diode);
+    expect(module.behaviour).toEqual({ technology: 'poly-si', shortCircuitCoefficient: 0.0032 });
+    const peak = globalPeak(module.at(uniformConditions(1000, STC_TEMPERATURE)).peaks());
+    expect(peak.voltage).toBeCloseTo(26.3, 7);
+    expect(peak.current).toBeCloseTo(7.61, 8);
+  });
+
+  test('holds every number of the datasheet against the model, in the units of the file', () => {
+    const { agreements } = fitDatasheet(NEARLY);
+    expect(agreements.map(({ field }) => field)).toEqual([
+      'isc_A',
+      'voc_V',
+      'vmp_V',
+      'imp_A',
+      'pmp_W',
+      'current_at_vmp_A',
+      'slope_at_isc_A_per_V',
+      'beta_voc_mV_per_K',
+      'gamma_pmp_pct_per_K',
+    ]);
+    for (const { datasheet, model, miss } of agreements) {
+      expect(miss).toBeCloseTo((model - datasheet) / Math.abs(datasheet), 14);
+    }
+    const value = (name: string) => agreements.find(({ field }) => field === name)!;
+    expect(value('beta_voc_mV_per_K').datasheet).toBe(-123);
+    expect(value('gamma_pmp_pct_per_K').datasheet).toBeCloseTo(-0.47, 14);
+    expect(value('pmp_W').datasheet).toBe(26.3 * 7.61);
+    // Silicon: what every such model gives, whatever the datasheet.
+    expect(value('beta_voc_mV_per_K').model).toBeLessThan(-90);
+    expect(value('beta_voc_mV_per_K').model).toBeGreaterThan(-140);
+  });
+
+  test('gives the model’s own number as the miss where the datasheet says 0', () => {
+    const { agreements } = fitDatasheet({ ...SHEET, slopeAtShortCircuit: 0 });
+    const slope = agreements.find(({ field }) => field === 'slope_at_isc_A_per_V')!;
+    expect(slope.datasheet).toBe(0);
+    expect(slope.miss).toBe(slope.model);
+  });
+
+  test('is held against common practice: A from 1 to 2, exp(Voc / VT) of order 1e9 for silicon', () => {
+    const { practice, ideality } = fitDatasheet(SHEET);
+    expect(practice).toHaveLength(2);
+    expect(practice[0]).toEqual({
+      says: 'ideality factor between 1 and 2',
+      value: ideality,
+      holds: true,
+    });
+    expect(practice[1]!.says).toContain('exp(Voc / VT) of order 1e9');
+    expect(practice[1]!.value).toBeCloseTo(
+      Math.exp(32.9 / (54 * ideality * 0.02569257912108585)),
+      -4,
+    );
+    expect(practice[1]!.holds).toBe(true);
+  });
+
+  test('does not expect the growth of silicon from other materials', () => {
+    const { practice } = fitDatasheet({ ...SHEET, technology: 'a-si-triple', cellsInSeries: 18 });
+    expect(practice.map(({ says }) => says)).toEqual(['ideality factor between 3 and 6']);
+  });
+
+  test('sees that A acts mostly near the peak: elsewhere the curves of all candidates agree', () => {
+    // Common practice. Isc and Voc are shared; at half of Vmp A moves the current far less than at
+    // the knee between peak and open circuit.
+    const { candidates } = fitDatasheet(SHEET, 'sweep');
+    const spread = (voltage: number): number => {
+      const currents = candidates
+        .filter(({ feasible, ideality }) => feasible && ideality <= 1.4)
+        .map(({ diode }) => new SingleDiodeCurve(diode).current(voltage));
+      return Math.max(...currents) - Math.min(...currents);
+    };
+    expect(spread(0.5 * 26.3)).toBeLessThan(0.01 * spread(28));
+  });
+});
