@@ -50,7 +50,7 @@ describe('parseDatasheet', () => {
       peakVoltage: 26.3,
       shortCircuitCoefficient: 0.0004 * 8.21,
       openCircuitCoefficient: (-0.36 / 100) * 32.9,
-      peakPowerCoefficient: -0.0045,
+      peakPowerCoefficient: -0.45 / 100,
       nominalOperatingTemperature: 320.15,
       slopeAtShortCircuit: -0.0024,
       slopeAtOpenCircuit: -2.2,
@@ -90,16 +90,16 @@ describe('parseDatasheet', () => {
   });
 
   test('names the nearest key to one it does not know', () => {
-    expect(problemsOf(file('alpha_isc: 0.04', 'ppm_W: 200'))).toEqual([
+    expect(problemsOf(file('alpha_isc_pct: 0.04', 'pmp_W: 200'))).toEqual([
       expect.objectContaining({
         code: 'UNKNOWN_KEY',
         file: 'module.yaml',
         line: 10,
         column: 1,
-        field: 'alpha_isc',
-        hint: 'Did you mean alpha_isc_mA_per_K?',
+        field: 'alpha_isc_pct',
+        hint: 'Did you mean alpha_isc_pct_per_K?',
       }),
-      expect.objectContaining({ code: 'UNKNOWN_KEY', line: 11, field: 'ppm_W' }),
+      expect.objectContaining({ code: 'UNKNOWN_KEY', line: 11, field: 'pmp_W' }),
     ]);
   });
 
@@ -144,9 +144,9 @@ describe('parseDatasheet', () => {
     ['isc_A: .inf', 'must be a number, found Infinity.'],
     ['voc_V: 1001', 'must be at most 1000, found 1001.'],
     ['isc_A:', 'must be a number, found nothing.'],
-    ['isc_A: [8.21]', 'must be a number, found a list.'],
+    ['isc_A: [8.21]', 'must be a number, found a list of 1.'],
     ['name: 7', 'must be text, found 7.'],
-    ['name: ""', 'must be at least 1 characters, found "".'],
+    ['name: ""', 'must have at least 1 character, found "".'],
     ['tolerance_pct: -3', 'must be at least 0, found -3.'],
   ])('refuses %s: %s', (line, message) => {
     const [problem, ...others] = problemsOf(file(line));
@@ -155,14 +155,25 @@ describe('parseDatasheet', () => {
   });
 
   test('refuses a technology it does not know, and names the nearest', () => {
-    expect(problemsOf(file('technology: poly-Si '))).toEqual([]);
+    expect(problemsOf(file('technology: Poly-Si'))).toEqual([
+      {
+        code: 'INVALID_VALUE',
+        file: 'module.yaml',
+        line: 2,
+        column: 13,
+        field: 'technology',
+        message:
+          'must be one of mono-si, poly-si, cdte, cis, cigs, gaas, a-si-triple, found "Poly-Si".',
+        hint: 'Did you mean poly-si?',
+      },
+    ]);
   });
 
   test('refuses a file that is not a group of keys', () => {
     expect(problemsOf('- 1\n- 2\n')[0]).toMatchObject({
       code: 'INVALID_VALUE',
       line: 1,
-      message: 'must be a group of keys, found a list.',
+      message: 'must be a group of keys, found a list of 2.',
     });
   });
 });

@@ -42,7 +42,10 @@ function known(
   codes: readonly (readonly number[])[],
 ): KnownProduct {
   const layout = layOut(
-    formats.map((format, index) => ({ name: `column_${index}`, quantity: 'voltage', format })),
+    formats.map((format, index) => ({
+      ...{ name: `column_${index}`, group: index, format },
+      quantity: 'voltage',
+    })),
   );
   return {
     codes,

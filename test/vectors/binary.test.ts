@@ -42,7 +42,7 @@ describe('a vector file', () => {
         product.sections[0]!.columns.forEach((column, index) => {
           const { step, origin, bits, signed, minCode, maxCode } = column.quantizer.format;
           expect(section!.columns[index]).toMatchObject({
-            ...{ name: column.name, quantity: column.quantity, group: 0 },
+            ...{ name: column.name, quantity: column.quantity, group: column.group },
             format: { step, origin, bits, signed, minCode, maxCode },
           });
         });
