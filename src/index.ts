@@ -36,6 +36,8 @@ export { SCHEMA_NAMES, schemaText, type SchemaName } from './schemas.js';
 export { exp, expm1 } from './numeric/exponential.js';
 export { log, log1p } from './numeric/logarithm.js';
 export { wrightOmega } from './numeric/wright-omega.js';
+export { findRoot, findRootWithSlope, type RootOptions, type RootResult } from './numeric/root.js';
+export { Random } from './numeric/random.js';
 export { crc32 } from './numeric/crc32.js';
 
 // Integers: formats and codes.

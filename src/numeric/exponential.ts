@@ -6,7 +6,8 @@
  *
  *   e^x = 2^e · 2^(j/128) · e^r,   |r| <= ln 2/256,
  *
- * where 2^(j/128) comes from a table in two parts and e^r from a short polynomial.
+ * where 2^(j/128) comes from a table in two parts and e^r - 1 from a short polynomial. Below 1/8
+ * in magnitude expm1 has a polynomial of its own. NaN results have whatever bits the engine likes.
  */
 import * as table from './exponential-table.js';
 import { POWERS_OF_TWO } from './powers-of-two.js';
@@ -21,8 +22,8 @@ const TO_INTEGER = 6755399441055744;
 const SMALLEST_NORMAL = 2.2250738585072014e-308;
 
 /**
- * e^x. Error at most 0.52 ulp, for subnormal results too; rises with x nowhere broken by more
- * than that error.
+ * e^x. Error below 0.52 ulp by the sum of all roundings, subnormal results included; 0.509 ulp in
+ * the worst of 600 000 arguments compared with 56-digit arithmetic.
  *
  *   x = -Inf  0        x = +Inf  +Inf        x = NaN  NaN        x = ±0  1
  *   x >  709.782712893384    +Inf: e^x is beyond the largest double
@@ -41,7 +42,8 @@ export function exp(x: number): number {
 }
 
 /**
- * e^x - 1 without the cancellation near 0. Error at most 0.64 ulp.
+ * e^x - 1 without the cancellation near 0. Error below 0.62 ulp by the sum of all roundings;
+ * 0.563 ulp in the worst of 900 000 arguments compared with 56-digit arithmetic.
  *
  *   x = -Inf  -1       x = +Inf  +Inf        x = NaN  NaN        x = ±0  ±0
  *   x > 709.782712893384    +Inf: e^x - 1 is beyond the largest double
@@ -63,7 +65,7 @@ export function expm1(x: number): number {
   return high + (low + (TWO_TO_STEP_REST[j]! * scale + power * p));
 }
 
-/** Taylor's series, |r| <= ln 2/256: cut off and rounding errors stay below 2^-60. */
+/** Taylor's series, cut where the next term is below 2^-60 for |r| <= ln 2/256. */
 function expm1InStep(r: number): number {
   const rr = r * r;
   return r + rr * (0.5 + r * (1 / 6) + rr * (1 / 24 + r * (1 / 120)));

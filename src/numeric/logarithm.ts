@@ -24,7 +24,8 @@ const words = new Int32Array(double.buffer);
 const TOP = new Uint8Array(new Uint16Array([1]).buffer)[0]!;
 
 /**
- * ln x. Error at most 0.6 ulp, for subnormal x too.
+ * ln x. Error below 0.66 ulp by the sum of all roundings, subnormal x included; 0.572 ulp in the
+ * worst of 700 000 arguments compared with 56-digit arithmetic.
  *
  *   x = +Inf  +Inf     x = ±0  -Inf          x < 0  NaN          x = NaN  NaN
  *   x = 1     0
@@ -42,7 +43,8 @@ export function log(x: number): number {
 }
 
 /**
- * ln(1 + x) without the loss of x's last places near 0. Error at most 0.6 ulp.
+ * ln(1 + x) without the loss of x's last places near 0. Error below 0.66 ulp by the sum of all
+ * roundings; 0.573 ulp in the worst of 800 000 arguments compared with 56-digit arithmetic.
  *
  *   x = +Inf  +Inf     x = -1  -Inf          x < -1  NaN         x = NaN  NaN
  *   x = ±0    ±0       |x| < 2^-54  x, subnormal numbers included

@@ -36,7 +36,8 @@ export class SingleDiodeCurve implements Curve {
   readonly #perVolt: number;
   readonly #current0: Amperes;
   readonly #shunt: AmperesPerVolt;
-  readonly #isLeaky: boolean;
+  /** The closed form alone will do. */
+  readonly #isClosed: boolean;
 
   #openCircuitVoltage: Volts = NaN;
   #peaks: readonly Peak[] | undefined;
@@ -49,7 +50,8 @@ export class SingleDiodeCurve implements Curve {
     this.#perVolt = 1 / (idealityVoltage * divisor);
     this.#current0 = source / divisor;
     this.#shunt = diode.shuntConductance / divisor;
-    this.#isLeaky = saturationCurrent > LEAKY * photocurrent;
+    this.#isClosed =
+      seriesResistance >= NO_DROP * idealityVoltage && saturationCurrent <= LEAKY * photocurrent;
     if (seriesResistance < NO_DROP * idealityVoltage) {
       this.#omegaScale = 0;
       this.#offset = 0;
@@ -62,10 +64,10 @@ export class SingleDiodeCurve implements Curve {
   }
 
   current(voltage: Volts): Amperes {
-    if (this.#omegaScale === 0) return currentAtJunction(this.diode, voltage);
-    const omega = wrightOmega(this.#offset + voltage * this.#perVolt);
-    const current = this.#current0 - voltage * this.#shunt - this.#omegaScale * omega;
-    return this.#isLeaky ? this.#refined(voltage, current) : current;
+    if (this.#isClosed) return this.#closedForm(voltage);
+    return this.#omegaScale === 0
+      ? currentAtJunction(this.diode, voltage)
+      : this.#refined(voltage, this.#closedForm(voltage));
   }
 
   slope(voltage: Volts): AmperesPerVolt {
@@ -89,6 +91,11 @@ export class SingleDiodeCurve implements Curve {
   peaks(): readonly Peak[] {
     this.#peaks ??= [singleDiodePeak(this.diode, this.openCircuitVoltage)];
     return this.#peaks;
+  }
+
+  #closedForm(voltage: Volts): Amperes {
+    const omega = wrightOmega(this.#offset + voltage * this.#perVolt);
+    return this.#current0 - voltage * this.#shunt - this.#omegaScale * omega;
   }
 
   /** One Newton step on the equation itself. */

@@ -39,12 +39,12 @@ export const anyCurve = (): fc.Arbitrary<AnyCurve> =>
   );
 
 /** Lowest and highest code of a layout. */
-export function codeRange({ storage, signed }: ColumnLayout): [number, number] {
+function codeRange({ storage, signed }: ColumnLayout): [number, number] {
   const codes = 2 ** (8 * storage);
   return signed ? [-codes / 2, codes / 2 - 1] : [0, codes - 1];
 }
 
-export function codesOf({ storage, signed }: ColumnLayout, codes: readonly number[]): CodeArray {
+function codesOf({ storage, signed }: ColumnLayout, codes: readonly number[]): CodeArray {
   const types = signed
     ? { 1: Int8Array, 2: Int16Array, 4: Int32Array }
     : { 1: Uint8Array, 2: Uint16Array, 4: Uint32Array };

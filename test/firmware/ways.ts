@@ -6,7 +6,7 @@ import { openNativeLibrary } from './native-port.js';
 import { COMPILE_TIMEOUT } from './wasm-build.js';
 import { openWasmLibrary } from './wasm-port.js';
 
-export interface Way {
+interface Way {
   /** Ends "compiled …". */
   readonly name: string;
   /** Whether this machine lacks what it needs. */

@@ -8,7 +8,7 @@ export interface WasmMemory {
   grow(pages: number): number;
 }
 
-export type WasmImports = Record<string, Record<string, (...args: number[]) => number>>;
+type WasmImports = Record<string, Record<string, (...args: number[]) => number>>;
 
 interface WebAssemblyNamespace {
   readonly Module: new (bytes: Uint8Array) => WasmModule;

@@ -85,9 +85,9 @@ describe('expm1', () => {
     'where 1 fades against e^x': (random) => random.between(30, 45),
   };
 
-  test.each(Object.entries(regions))('errs by at most 0.57 ulp %s', (_, region) => {
+  test.each(Object.entries(regions))('errs by at most 0.58 ulp %s', (_, region) => {
     const worst = worstErrorInUlps(expm1, exactExpm1, region, new Random(2), POINTS_PER_REGION);
-    expect(worst.error, worst.place).toBeLessThanOrEqual(0.57);
+    expect(worst.error, worst.place).toBeLessThanOrEqual(0.58);
   });
 
   test.each([

@@ -29,9 +29,9 @@ describe('log', () => {
       (1 + random.integer(0, 128) / 128) * (1 + random.between(-1e-9, 1e-9)),
   };
 
-  test.each(Object.entries(regions))('errs by at most 0.57 ulp %s', (_, region) => {
+  test.each(Object.entries(regions))('errs by at most 0.58 ulp %s', (_, region) => {
     const worst = worstErrorInUlps(log, (x) => x.ln(), region, new Random(4), POINTS_PER_REGION);
-    expect(worst.error, worst.place).toBeLessThanOrEqual(0.57);
+    expect(worst.error, worst.place).toBeLessThanOrEqual(0.58);
   });
 
   test.each([
@@ -61,8 +61,8 @@ describe('log', () => {
     const exponent = fc.double({ min: -708, max: 709, noNaN: true });
     fc.assert(
       fc.property(exponent, (x) => {
-        // Half a place of e^x, 0.51 · 2^-52 at most, is as much in x; log errs by 0.57 ulp of x.
-        const tolerance = 0.51 * 2 ** -52 + 0.57 * 2 ** -52 * Math.abs(x);
+        // Half a place of e^x, 0.51 · 2^-52 at most, is as much in x; log errs by 0.58 ulp of x.
+        const tolerance = 0.51 * 2 ** -52 + 0.58 * 2 ** -52 * Math.abs(x);
         expect(Math.abs(log(exp(x)) - x)).toBeLessThanOrEqual(tolerance);
       }),
       { seed: 5 },
@@ -84,9 +84,9 @@ describe('log1p', () => {
       (random.integer(0, 128) / 128) * (1 + random.between(-1e-9, 1e-9)),
   };
 
-  test.each(Object.entries(regions))('errs by at most 0.57 ulp %s', (_, region) => {
+  test.each(Object.entries(regions))('errs by at most 0.58 ulp %s', (_, region) => {
     const worst = worstErrorInUlps(log1p, exactLog1p, region, new Random(6), POINTS_PER_REGION);
-    expect(worst.error, worst.place).toBeLessThanOrEqual(0.57);
+    expect(worst.error, worst.place).toBeLessThanOrEqual(0.58);
   });
 
   test.each([
@@ -110,9 +110,9 @@ describe('log1p', () => {
     const small = fc.double({ min: -1, max: 1, noNaN: true });
     fc.assert(
       fc.property(small, (x) => {
-        // An error of 0.57 ulp in y = expm1(x) is at most 0.57 · 2^-52 |y| e^-x in x, and
-        // |y| e^-x <= 1.72 |x| there; log1p adds 0.57 ulp of x. Subnormal x come back exactly.
-        const tolerance = (0.57 * 1.72 + 0.57) * 2 ** -52 * Math.abs(x);
+        // An error of 0.58 ulp in y = expm1(x) is at most 0.58 · 2^-52 |y| e^-x in x, and
+        // |y| e^-x <= 1.72 |x| there; log1p adds 0.58 ulp of x. Subnormal x come back exactly.
+        const tolerance = (0.58 * 1.72 + 0.58) * 2 ** -52 * Math.abs(x);
         expect(Math.abs(log1p(expm1(x)) - x)).toBeLessThanOrEqual(tolerance);
       }),
       { seed: 7 },

@@ -29,7 +29,6 @@ describe('wrightOmega', () => {
   test.each(Object.entries(regions))('errs by at most 3 ulp %s', (_, region) => {
     const random = new Random(11);
     const worst = worstErrorInUlps(wrightOmega, exactOmega, region, random, POINTS_PER_REGION);
-    console.log(_, worst);
     expect(worst.error, worst.place).toBeLessThanOrEqual(3);
   });
 

@@ -117,17 +117,6 @@ describe('modelText', () => {
     );
   });
 
-  test('is stable: what is read back is written the same way but for that ulp, and then the same', () => {
-    fc.assert(
-      fc.property(modules, (module) => {
-        const once = parse(modelText(module));
-        const twice = parse(modelText(once));
-        expect(parse(modelText(twice)).reference).toEqual(twice.reference);
-      }),
-      { seed: 82 },
-    );
-  });
-
   test('keeps names that YAML would take for something else', () => {
     const { reference, behaviour } = parse(TEXT);
     for (const name of ['1234', 'null', 'yes', '- x', 'a: b', '#1', '"', 'Größe 60 µ', ' x ']) {
