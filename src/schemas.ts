@@ -1,6 +1,6 @@
 /** The JSON Schemas of all input files, from the definitions that validate them. */
 import { z } from 'zod';
-import { datasheetDefinition } from './source/datasheet-file.js';
+import { datasheetDefinition } from './source/datasheet-definition.js';
 import { modelDefinition } from './source/model-file.js';
 import { suiteDefinition } from './vectors/suite-definition.js';
 import { weatherDefinition } from './weather/definition.js';

@@ -30,18 +30,20 @@ export function fitCommand() {
       }
       if (!fit.solved) {
         say(`No curve meets this datasheet: ${fit.account}.`);
+        if (fit.advice !== undefined) say(fit.advice);
         process.exitCode = 1;
       }
     });
 }
 
 function asJson(fit: Fit): unknown {
-  const { diode, module, ideality, method, solved, account, agreements, practice } = fit;
+  const { diode, module, ideality, method, solved, account, advice, agreements, practice } = fit;
   return {
     name: module.name,
     method,
     solved,
     account,
+    ...(advice === undefined ? {} : { advice }),
     parameters: {
       photocurrent_A: diode.photocurrent,
       saturation_current_A: diode.saturationCurrent,

@@ -1,33 +1,37 @@
-/**
- * The word of `known` that is nearest to `word` by edit distance, or undefined if none is near
- * enough to be what the writer meant (more than a third of the letters differ).
- */
-function nearest(word: string, known: readonly string[]): string | undefined {
-  let best: string | undefined;
-  let bestDistance = Infinity;
-  for (const candidate of known) {
-    const distance = editDistance(word.toLowerCase(), candidate.toLowerCase());
-    if (distance < bestDistance) {
-      best = candidate;
-      bestDistance = distance;
-    }
-  }
-  return bestDistance <= Math.max(1, Math.ceil(Math.max(word.length, best?.length ?? 0) / 3))
-    ? best
-    : undefined;
-}
-
 /** The hint that goes with an unknown word: the nearest known one, or all of them. */
 export function suggest(word: string, known: readonly string[]): string {
   const meant = nearest(word, known);
   return meant === undefined ? `Known here: ${known.join(', ')}.` : `Did you mean ${meant}?`;
 }
 
-// Levenshtein 1966: insertions, deletions and substitutions count one each. Long words are cut:
-// nobody is helped by a suggestion for a paragraph.
-function editDistance(from: string, to: string): number {
-  const a = from.slice(0, 64);
-  const b = to.slice(0, 64);
+/**
+ * The word of `known` that is nearest to `word`: by edit distance, if no more than a third of the
+ * letters differ; else the first one that `word` begins, as `alpha_isc` begins
+ * `alpha_isc_pct_per_K`.
+ */
+function nearest(word: string, known: readonly string[]): string | undefined {
+  const meant = word.slice(0, LONGEST_WORD).toLowerCase();
+  let best: string | undefined;
+  let bestDistance = Infinity;
+  for (const candidate of known) {
+    const distance = editDistance(meant, candidate.slice(0, LONGEST_WORD).toLowerCase());
+    if (distance < bestDistance) {
+      best = candidate;
+      bestDistance = distance;
+    }
+  }
+  const longest = Math.max(meant.length, Math.min(best?.length ?? 0, LONGEST_WORD));
+  if (bestDistance <= Math.max(1, Math.ceil(longest / 3))) return best;
+  if (meant.length < SHORTEST_START) return undefined;
+  return known.find((candidate) => candidate.toLowerCase().startsWith(meant));
+}
+
+// Nobody is helped by a suggestion for a paragraph, or for two letters.
+const LONGEST_WORD = 64;
+const SHORTEST_START = 3;
+
+// Levenshtein 1966: insertions, deletions and substitutions count one each.
+function editDistance(a: string, b: string): number {
   let previous = Array.from({ length: b.length + 1 }, (_, column) => column);
   for (let row = 1; row <= a.length; row++) {
     const current = [row];

@@ -8,16 +8,26 @@ import { worldFault } from './world-fault.js';
 export function writeWhole(path: string, content: string): WrittenFile {
   const target = resolve(path);
   const beside = join(dirname(target), `.${basename(target)}.partial`);
-  rmSync(beside, { force: true });
-  const file = new StagedFile(beside, path);
+  let file: StagedFile | undefined;
   try {
+    rmSync(beside, { force: true });
+    file = new StagedFile(beside, path);
     file.write(Buffer.from(content, 'utf8'));
     const written = file.end();
     renameSync(beside, target);
     return written;
   } catch (error) {
-    file.close();
-    rmSync(beside, { force: true });
+    file?.close();
+    discard(beside);
     throw worldFault(error, path);
+  }
+}
+
+// What went wrong before matters more than that its remains cannot be removed either.
+function discard(path: string): void {
+  try {
+    rmSync(path, { force: true });
+  } catch {
+    return;
   }
 }

@@ -35,7 +35,9 @@ export function parseSource(document: InputDocument): SourceReading {
     throw new Fault('input', {
       code: 'INFEASIBLE_DATASHEET',
       file,
-      message: `no single-diode curve meets this datasheet: ${fit.account}.`,
+      message:
+        `no single-diode curve meets this datasheet: ${fit.account}` +
+        `${fit.advice === undefined ? '' : `; ${fit.advice}`}.`,
       hint:
         'Correct it, or take the nearest curve as it is: ' +
         `\`hillproof fit ${file} -o MODEL\` writes that as a model file, to use in its place.`,

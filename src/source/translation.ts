@@ -35,9 +35,9 @@ export function translate(
   irradiance: WattsPerSquareMetre,
   temperature: Kelvin,
 ): SingleDiode {
-  const sun = irradiance / STC_IRRADIANCE;
-  const rise = temperature - STC_TEMPERATURE;
-  const ratio = temperature / STC_TEMPERATURE;
+  const sun = irradiance / SUN;
+  const rise = temperature - REFERENCE;
+  const ratio = temperature / REFERENCE;
   const photocurrent = sun * (reference.photocurrent + behaviour.shortCircuitCoefficient * rise);
   return {
     photocurrent: Math.max(photocurrent, 0),
@@ -51,12 +51,25 @@ export function translate(
 
 /** I0(T) / I0(25 °C) of a technology. */
 export function saturationRatio(technology: TechnologyName, temperature: Kelvin): number {
-  const { bandGap, bandGapSlope } = TECHNOLOGIES[technology];
-  const ratio = temperature / STC_TEMPERATURE;
-  const gapAtReference = (bandGap * PER_KELVIN) / STC_TEMPERATURE;
-  const gap = bandGap * (1 + bandGapSlope * (temperature - STC_TEMPERATURE));
-  return ratio * ratio * ratio * exp(gapAtReference - (gap * PER_KELVIN) / temperature);
+  const ratio = temperature / REFERENCE;
+  const share = (temperature - REFERENCE) / temperature;
+  return ratio * ratio * ratio * exp(STEEPNESS[technology] * share);
 }
+
+// Engines fold a module's own constants into the code, but look imported ones up at every call.
+const SUN = STC_IRRADIANCE;
+const REFERENCE = STC_TEMPERATURE;
 
 /** Electronvolts over k: an energy of 1 eV in kelvin. */
 const PER_KELVIN = ELEMENTARY_CHARGE / BOLTZMANN;
+
+/**
+ * (Eg_r / k) (1/T_r - c), which makes the exponent of I0 one product with (T - T_r) / T instead of
+ * a difference of two large terms.
+ */
+const STEEPNESS = Object.fromEntries(
+  Object.entries(TECHNOLOGIES).map(([name, { bandGap, bandGapSlope }]) => [
+    name,
+    bandGap * PER_KELVIN * (1 / REFERENCE - bandGapSlope),
+  ]),
+) as Record<TechnologyName, number>;

@@ -10,7 +10,7 @@ import { anyDiode } from './any-diode.js';
 import { fixed, over, size, toDouble, type Fixed } from './fixed-point.js';
 import { ExactDiode } from './reference.js';
 
-const RANDOM_DIODES = 3000;
+const RANDOM_DIODES = 6000;
 
 /** The worst error of each quantity, and the diode that shows it. */
 const worst = new Map<string, { error: number; diode: SingleDiode }>();

@@ -52,7 +52,7 @@ export function anyDiode(random: Random): SingleDiode {
   return translate(diode, { technology, shortCircuitCoefficient }, irradiance, temperature);
 }
 
-export const logBetween = (random: Random, low: number, high: number): number =>
+const logBetween = (random: Random, low: number, high: number): number =>
   low * Math.pow(high / low, random.uniform());
 
 const one = (random: Random, chance: number): boolean => random.uniform() < chance;

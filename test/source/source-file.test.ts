@@ -28,7 +28,7 @@ describe('parseSource', () => {
     const { module, fit, warnings } = parse(DATASHEET);
     expect(fit!.solved).toBe(true);
     expect(fit!.module).toBe(module);
-    expect(warnings).toEqual([]);
+    expect(warnings.map(({ code }) => code)).toEqual(['TEMPERATURE_MISS']);
   });
 
   test('takes a model file as it is', () => {

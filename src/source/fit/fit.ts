@@ -44,8 +44,8 @@ export function fitDatasheet(datasheet: Datasheet, method?: FitMethod): Fit {
   }
   const fit = sweepFit(datasheet);
   return fit.solved
-    ? { ...fit, warnings: [noExactSolution(fit.account)] }
-    : { ...fit, account: `${fit.account}; ${outcome.account}` };
+    ? { ...fit, warnings: [noExactSolution(fit.account), ...fit.warnings] }
+    : { ...fit, ...(outcome.advice === undefined ? {} : { advice: outcome.advice }) };
 }
 
 function noExactSolution(account: string): Problem {
@@ -63,13 +63,14 @@ function sweepFit(datasheet: Datasheet): Fit {
 
 function complete(method: FitMethod, datasheet: Datasheet, outcome: MethodOutcome): Fit {
   const module = moduleOf(datasheet, outcome.diode);
+  const rows = agreements(module, datasheet);
   return {
     method,
     ...outcome,
     module,
-    agreements: agreements(module, datasheet),
+    agreements: rows,
     practice: practiceChecks(datasheet, outcome),
-    warnings: [],
+    warnings: outcome.solved ? temperatureWarnings(rows) : [],
     candidates: [],
   };
 }
@@ -78,6 +79,22 @@ function moduleOf(datasheet: Datasheet, diode: SingleDiode): Module {
   const { name, cellsInSeries, technology, shortCircuitCoefficient } = datasheet;
   return new Module(name, cellsInSeries, diode, { technology, shortCircuitCoefficient });
 }
+
+/** The translation takes no coefficient of voltage: it may leave the datasheet's far behind. */
+function temperatureWarnings(rows: readonly Agreement[]): Problem[] {
+  return rows
+    .filter(({ field, miss }) => field === 'beta_voc_mV_per_K' && Math.abs(miss) > MOST_BETA_MISS)
+    .map(({ datasheet, model }) => ({
+      code: 'TEMPERATURE_MISS',
+      message:
+        `the datasheet's Voc moves by ${datasheet.toFixed(0)} mV/K, the fitted module's by ` +
+        `${model.toFixed(0)} mV/K: curves far from 25 °C will be off.`,
+      hint: 'Ideality factors near 1 agree best; a slope at short circuit brings A down.',
+    }));
+}
+
+// Of itself. Over 40 K that is some 3 % of Voc.
+const MOST_BETA_MISS = 0.2;
 
 function practiceChecks(datasheet: Datasheet, outcome: MethodOutcome): PracticeCheck[] {
   const { ideality, diode } = outcome;

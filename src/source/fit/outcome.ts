@@ -10,11 +10,10 @@ export interface MethodOutcome {
   /** A of one cell. */
   readonly ideality: number;
   readonly diode: SingleDiode;
-  /**
-   * In words, without a full stop: which conditions decided; if none can be met, what the nearest
-   * curve misses, where the conditions would be met, and what in the datasheet to look at.
-   */
+  /** In words, without a full stop: which conditions decided, or what the nearest curve misses. */
   readonly account: string;
+  /** Where there is no solution: where one would be, if anywhere, and what that says to look for. */
+  readonly advice?: string;
 }
 
 /** The ideality factor of a diffusion-dominated junction is 1, of a recombination-dominated one 2. */

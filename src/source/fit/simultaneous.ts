@@ -35,9 +35,9 @@ export function fitSimultaneously(datasheet: Datasheet): MethodOutcome {
   }
   const account =
     `no A from ${cellIdealityRange(datasheet).join(' to ')} meets ${conditions} together; the ` +
-    `nearest curve, A = ${ideality.toFixed(3)}, ${condition.describe(diode)}; ` +
-    whatToLookFor(datasheet, condition, ideality);
-  return { solved: false, ideality, diode, account };
+    `nearest curve, A = ${ideality.toFixed(3)}, ${condition.describe(diode)}`;
+  const advice = whatToLookFor(datasheet, condition, ideality);
+  return { solved: false, ideality, diode, account, advice };
 }
 
 /** A curve through the three points, and what it misses of the last condition. */
@@ -84,7 +84,8 @@ function noCurve(datasheet: Datasheet, condition: LastCondition): MethodOutcome 
     account:
       `no A from ${least} to ${most} gives a curve as square as this datasheet; the nearest, ` +
       `A = ${least} without series resistance, carries ${(100 * lack).toFixed(2)} % less than ` +
-      `Imp at Vmp; ${whatToLookFor(datasheet, condition, least)}`,
+      'Imp at Vmp',
+    advice: whatToLookFor(datasheet, condition, least),
   };
 }
 
@@ -99,6 +100,6 @@ function whatToLookFor(
   const { small, large } = condition.suspects;
   const look = `look for ${nearestIdeality > least ? large : small}`;
   return elsewhere !== undefined && isMet(elsewhere)
-    ? `A = ${elsewhere.ideality.toFixed(3)} would do: ${look}`
-    : `no other A would do: ${look}`;
+    ? `all would be met at A = ${elsewhere.ideality.toFixed(3)}; ${look}`
+    : `they are met at no other A either; ${look}`;
 }
