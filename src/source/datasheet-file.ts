@@ -7,8 +7,6 @@ import { datasheetDefinition, type DatasheetEntries } from './datasheet-definiti
 import { datasheetProblems } from './datasheet-plausibility.js';
 import type { Datasheet } from './datasheet.js';
 
-export { datasheetDefinition };
-
 /** A datasheet, and what in it is odd without being wrong. */
 export interface DatasheetReading {
   readonly datasheet: Datasheet;
