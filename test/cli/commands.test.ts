@@ -1,7 +1,7 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, test } from 'vitest';
-import { newFolder } from '../vectors/small-suite.js';
+import { newFolder } from '../new-folder.js';
 import { DEMO, run } from './run-program.js';
 
 const module = join(DEMO, 'module.yaml');

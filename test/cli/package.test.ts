@@ -3,7 +3,7 @@ import { readdirSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { expect, test } from 'vitest';
-import { newFolder } from '../vectors/small-suite.js';
+import { newFolder } from '../new-folder.js';
 
 const root = fileURLToPath(new URL('../..', import.meta.url));
 

@@ -2,7 +2,8 @@
 import { readFileSync, writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
-import { newFolder, SMALL_SUITE, writeInputs } from '../vectors/small-suite.js';
+import { newFolder } from '../new-folder.js';
+import { SMALL_SUITE, writeInputs } from '../vectors/small-suite.js';
 import { DEMO, run } from './run-program.js';
 
 const demoModule = readFileSync(join(DEMO, 'module.yaml'), 'utf8');

@@ -3,7 +3,7 @@ import { mkdirSync, readdirSync, readFileSync, renameSync, writeFileSync } from 
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
 import { recoverFolder, StagedFolder } from '../../src/file/staged-folder.js';
-import { newFolder } from '../vectors/small-suite.js';
+import { newFolder } from '../new-folder.js';
 
 const filesOf = (folder: string): string[] => readdirSync(folder).sort();
 

@@ -11,7 +11,7 @@ import {
 } from '../../src/vectors/binary-reader.js';
 import { emitSuite } from '../../src/vectors/emit.js';
 import { QUANTITIES } from '../../src/vectors/quantity.js';
-import { newFolder } from '../vectors/small-suite.js';
+import { newFolder } from '../new-folder.js';
 import { HP, type CLibrary } from './c-library.js';
 import type { CProgram } from './c-program.js';
 import { compileNative, nativeCompiler, runNative } from './native-build.js';

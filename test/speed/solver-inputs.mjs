@@ -24,11 +24,7 @@ export const { module } = loadSource(
 export function scatteredVoltages() {
   const { openCircuitVoltage } = module.at(uniformConditions(STC_IRRADIANCE, STC_TEMPERATURE));
   const random = new Random(1).split('voltages');
-  return inputsFrom(() => [
-    random.between(0, openCircuitVoltage),
-    STC_IRRADIANCE,
-    STC_TEMPERATURE,
-  ]);
+  return inputsFrom(() => [random.between(0, openCircuitVoltage), STC_IRRADIANCE, STC_TEMPERATURE]);
 }
 
 /** At STC, voltages that rise from short circuit to open circuit again and again. */

@@ -5,7 +5,8 @@ import { Fault, type Problem } from '../../src/fault.js';
 import { emitSuite } from '../../src/vectors/emit.js';
 import { listedFiles } from '../../src/vectors/manifest.js';
 import { verifySuite } from '../../src/vectors/verify.js';
-import { newFolder, SMALL_SUITE, writeInputs } from './small-suite.js';
+import { newFolder } from '../new-folder.js';
+import { SMALL_SUITE, writeInputs } from './small-suite.js';
 
 // Every output form once, to keep the number of bytes, and so of verifications, near 6,000.
 const EACH_FORM_ONCE = SMALL_SUITE.replace('points: 4', 'points: 2')

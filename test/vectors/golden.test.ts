@@ -5,7 +5,7 @@ import { expect, test } from 'vitest';
 import { emitSuite } from '../../src/vectors/emit.js';
 import { filesBelow } from '../../src/vectors/suite-folder.js';
 import { verifySuite } from '../../src/vectors/verify.js';
-import { newFolder } from './small-suite.js';
+import { newFolder } from '../new-folder.js';
 
 const demo = fileURLToPath(new URL('../../vectors/demo/', import.meta.url));
 const golden = join(demo, 'golden');

@@ -7,7 +7,8 @@ import { afterAll, describe, expect, test } from 'vitest';
 import { Fault } from '../../src/fault.js';
 import { emitSuite } from '../../src/vectors/emit.js';
 import { verifySuite } from '../../src/vectors/verify.js';
-import { newFolder, SMALL_SUITE, writeInputs } from './small-suite.js';
+import { newFolder } from '../new-folder.js';
+import { SMALL_SUITE, writeInputs } from './small-suite.js';
 
 const program = fileURLToPath(new URL('../../dist/cli/main.js', import.meta.url));
 

@@ -1,9 +1,6 @@
 /** A suite as small as one can be, in a folder of its own, for tests that damage it. */
-import { mkdtempSync, writeFileSync } from 'node:fs';
-import { tmpdir } from 'node:os';
+import { writeFileSync } from 'node:fs';
 import { join } from 'node:path';
-
-export const newFolder = (): string => mkdtempSync(join(tmpdir(), 'hillproof-test-'));
 
 export const SMALL_MODEL = `model: single-diode
 name: Small

@@ -3,7 +3,8 @@ import { writeFileSync } from 'node:fs';
 import { join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { expect, test } from 'vitest';
-import { newFolder, SMALL_MODEL } from './small-suite.js';
+import { newFolder } from '../new-folder.js';
+import { SMALL_MODEL } from './small-suite.js';
 
 const program = fileURLToPath(new URL('../../dist/cli/main.js', import.meta.url));
 

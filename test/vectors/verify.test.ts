@@ -9,7 +9,8 @@ import { emitSuite } from '../../src/vectors/emit.js';
 import { manifestText } from '../../src/vectors/manifest.js';
 import { readManifest } from '../../src/vectors/suite-folder.js';
 import { verifySuite } from '../../src/vectors/verify.js';
-import { newFolder, writeInputs } from './small-suite.js';
+import { newFolder } from '../new-folder.js';
+import { writeInputs } from './small-suite.js';
 
 let inputs: string;
 let whole: string;
