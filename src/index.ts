@@ -68,7 +68,7 @@ export {
 } from './source/fit/fit.js';
 export type { Agreement, AgreementField } from './source/fit/agreement.js';
 export { DEFAULT_SWEEP, sweepIdeality, type SweepCandidate } from './source/fit/sweep.js';
-export { modelText, parseModel } from './source/model-file.js';
+export { modelText, parseModel, writeModel } from './source/model-file.js';
 export { loadSource, parseSource, type SourceReading } from './source/source-file.js';
 
 // Weather.

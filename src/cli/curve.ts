@@ -1,4 +1,4 @@
-import { Command } from '@commander-js/extra-typings';
+import { Command, Option } from '@commander-js/extra-typings';
 import type { Curve } from '../index.js';
 import { numberOption, wholeOption } from './options.js';
 
@@ -9,7 +9,7 @@ export function curveCommand() {
     .option('--irradiance <W/m2>', 'in the plane', numberOption(0, 2000, ' W/m2'), 1000)
     .option('--temperature <C>', 'of the cells', numberOption(-60, 120, ' °C'), 25)
     .option('--points <N>', 'rows of the table', wholeOption(2, 100_000), 21)
-    .option('--csv', 'print the table as CSV and nothing else')
+    .addOption(new Option('--csv', 'print the table as CSV and nothing else').conflicts('json'))
     .option('--json', 'print one JSON document')
     .action(async (file, options) => {
       const { fromCelsius, loadSource, sampleCurve, uniformConditions } =

@@ -1,11 +1,11 @@
 import { Command } from '@commander-js/extra-typings';
-import type { Emission } from '../index.js';
+import type { Emission, Problem } from '../index.js';
 
 export function emitCommand() {
   return new Command('emit')
     .description('Build the vectors of a suite: binary, C99, CSV, JSON and a manifest.')
     .argument('<suite>', 'suite file')
-    .requiredOption('--out <folder>', 'folder to build; an older suite in it is replaced')
+    .requiredOption('--out <folder>', 'folder to build, required; an older suite in it is replaced')
     .option('--json', 'print the manifest')
     .action(async (file, options) => {
       const { emitSuite } = await import('../index.js');
@@ -26,7 +26,7 @@ export function emitCommand() {
 
 /** What was made and where it lies. */
 export async function printEmission({ folder, manifest }: Emission): Promise<void> {
-  const { colours, printLine, printTable } = await import('./print.js');
+  const { colours, counted, printLine, printTable, sayWarnings } = await import('./print.js');
   printLine(`${colours.bold(manifest.suite)} in ${folder}`);
   printLine();
   printTable(
@@ -35,20 +35,26 @@ export async function printEmission({ folder, manifest }: Emission): Promise<voi
       files.map(({ path, bytes }) => [
         path,
         String(bytes),
-        sections.map(({ tag, records }) => `${records} ${SECTION_NOUNS[tag] ?? tag}`).join(', '),
+        sections.map(({ tag, records }) => counted(records, SECTION_NOUNS[tag] ?? tag)).join(', '),
       ]),
     ),
   );
-  for (const { name, saturated } of manifest.products) {
-    for (const { column, low, high } of saturated) {
-      printLine(`  ${name}: ${column} saturated ${low} times low, ${high} times high`);
-    }
-  }
+  sayWarnings(saturationWarnings(manifest));
 }
 
 const SECTION_NOUNS: Readonly<Record<string, string>> = {
-  CURV: 'curves',
-  POIN: 'points',
-  PEAK: 'peaks',
-  SAMP: 'samples',
+  CURV: 'curve',
+  POIN: 'point',
+  PEAK: 'peak',
+  SAMP: 'sample',
 };
+
+// What a channel cannot hold is not an error of the suite: it may be what is to be tried.
+const saturationWarnings = ({ products }: Emission['manifest']): Problem[] =>
+  products.flatMap(({ name, saturated }) =>
+    saturated.map(({ column, low, high }) => ({
+      code: 'SATURATED',
+      message: `${name}: ${column} took its lowest code ${low} times and its highest ${high} times.`,
+      hint: 'If that is not meant, check reference, divider or gain of the format.',
+    })),
+  );

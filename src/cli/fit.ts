@@ -1,5 +1,5 @@
 import { Command, Option } from '@commander-js/extra-typings';
-import type { Fit } from '../index.js';
+import type { Fit, SweepCandidate } from '../index.js';
 
 export function fitCommand() {
   return new Command('fit')
@@ -15,17 +15,17 @@ export function fitCommand() {
     .option('-o, --output <file>', 'write a model file, which other commands take as a source')
     .option('--json', 'print one JSON document')
     .action(async (file, options) => {
-      const { fitDatasheet, modelText, parseDatasheet, readInput, writeWhole } =
+      const { fitDatasheet, parseDatasheet, readInput, sweepIdeality, writeModel } =
         await import('../index.js');
       const { printJson, say, sayWarnings } = await import('./print.js');
       const { datasheet, warnings } = parseDatasheet(readInput(file));
-      const method = options.candidates === true ? 'sweep' : options.method;
-      const fit = fitDatasheet(datasheet, method);
+      const fit = fitDatasheet(datasheet, options.method);
+      const candidates = options.candidates === true ? sweepIdeality(datasheet).candidates : [];
       sayWarnings([...warnings, ...fit.warnings.map((warning) => ({ file, ...warning }))]);
-      if (options.json === true) printJson(asJson(fit));
-      else await printFit(fit, options.candidates === true);
+      if (options.json === true) printJson(asJson(fit, candidates));
+      else await printFit(fit, candidates);
       if (options.output !== undefined) {
-        writeWhole(options.output, modelText(fit.module));
+        writeModel(options.output, fit.module);
         say(`Model written to ${options.output}.`);
       }
       if (!fit.solved) {
@@ -36,7 +36,7 @@ export function fitCommand() {
     });
 }
 
-function asJson(fit: Fit): unknown {
+function asJson(fit: Fit, candidates: readonly SweepCandidate[]): unknown {
   const { diode, module, ideality, method, solved, account, advice, agreements, practice } = fit;
   return {
     name: module.name,
@@ -53,11 +53,11 @@ function asJson(fit: Fit): unknown {
     },
     agreements,
     practice,
-    candidates: fit.candidates,
+    candidates,
   };
 }
 
-async function printFit(fit: Fit, withCandidates: boolean): Promise<void> {
+async function printFit(fit: Fit, candidates: readonly SweepCandidate[]): Promise<void> {
   const { colours, figure, percentText, printLine, printTable } = await import('./print.js');
   const { diode, module, ideality } = fit;
   printLine(colours.bold(module.name));
@@ -88,11 +88,11 @@ async function printFit(fit: Fit, withCandidates: boolean): Promise<void> {
     ['common practice', 'value', 'holds'],
     fit.practice.map(({ says, value, holds }) => [says, figure(value), holds ? 'yes' : 'no']),
   );
-  if (withCandidates) {
+  if (candidates.length > 0) {
     printLine();
     printTable(
       ['A', 'I0 A', 'Rs ohm', 'Voc miss', 'Vmp miss', 'Imp miss', 'Pmp miss', 'overall'],
-      fit.candidates.map((row) => [
+      candidates.map((row) => [
         row.ideality.toFixed(3),
         figure(row.diode.saturationCurrent, 6),
         row.feasible ? figure(row.diode.seriesResistance, 5) : 'negative',

@@ -41,7 +41,8 @@ program.addHelpText(
 // A reader that closes the pipe early, such as head, is not an error.
 process.stdout.on('error', (error: NodeJS.ErrnoException) => {
   if (error.code === 'EPIPE') process.exit(0);
-  throw error;
+  process.stderr.write(`error DISK stdout: ${error.message}\n`);
+  process.exit(3);
 });
 
 try {

@@ -57,8 +57,7 @@ const EXIT_CODES = { input: 2, check: 1, world: 3 } as const;
 /** Prints what went wrong and gives the exit code. */
 export function reportFault(error: unknown, asJson: boolean): number {
   if (!(error instanceof Fault)) {
-    const text = error instanceof Error ? (error.stack ?? error.message) : String(error);
-    say(`${errColours.red('internal error')} ${text}`);
+    say(`${errColours.red('error')} ${unforeseen(error)}`);
     return EXIT_CODES.world;
   }
   if (asJson) {
@@ -67,6 +66,13 @@ export function reportFault(error: unknown, asJson: boolean): number {
     reportProblems(error.problems);
   }
   return EXIT_CODES[error.kind];
+}
+
+// The system's own errors say enough; anything else is a fault of this program, and its place helps.
+function unforeseen(error: unknown): string {
+  if (!(error instanceof Error)) return String(error);
+  if ('code' in error && 'syscall' in error) return `DISK ${error.message}`;
+  return `INTERNAL please report this: ${error.stack ?? error.message}`;
 }
 
 /** Each problem on stderr. */
@@ -83,6 +89,10 @@ export function figure(value: number, digits = 4): string {
   if (value !== 0 && (size < 1e-3 || size >= 1e6)) return value.toExponential(digits - 1);
   return String(Number(value.toPrecision(digits)));
 }
+
+/** `1 problem`, `2 problems`. */
+export const counted = (count: number, noun: string): string =>
+  `${count} ${noun}${count === 1 ? '' : 's'}`;
 
 /** Adding 0 turns -0 into 0. */
 export const percentText = (ratio: number): string =>

@@ -24,12 +24,14 @@ export function verifyCommand() {
 }
 
 export async function printVerification({ suite, checked, problems }: Verification): Promise<void> {
-  const { colours, printLine, reportProblems } = await import('./print.js');
-  for (const { what, count } of checked) printLine(`  ${count} ${what}`);
+  const { colours, counted, printLine, reportProblems } = await import('./print.js');
+  for (const { what, held, of } of checked) {
+    printLine(`  ${held === of ? '' : `${held} of `}${of} ${what}`);
+  }
   reportProblems(problems);
   printLine(
     problems.length === 0
       ? `${colours.green('whole')}: ${suite} holds what its inputs give`
-      : `${colours.red('damaged')}: ${problems.length} problems in ${suite}`,
+      : `${colours.red('damaged')}: ${counted(problems.length, 'problem')} in ${suite}`,
   );
 }

@@ -6,6 +6,7 @@ import type { z } from 'zod';
 import { Fault, type Problem } from '../fault.js';
 import { fieldText, type FieldPath, type InputDocument } from './document.js';
 import { keysAt } from './definition-keys.js';
+import { expectation, hintFor, show, verb } from './expectation.js';
 import { suggest } from './nearest.js';
 
 /** @throws Fault with every departure from the definition, each with its place. */
@@ -39,6 +40,9 @@ function problemsOf(
       hint: suggest(key, known),
     }));
   }
+  if (issue.code === 'invalid_key') {
+    return [keyProblem(issue, path, document)];
+  }
   if (issue.code === 'invalid_union') {
     const nearestBranch = closestBranch(issue);
     if (nearestBranch !== undefined) {
@@ -46,6 +50,20 @@ function problemsOf(
     }
   }
   return [describe(issue, path, document)];
+}
+
+// A key that the writer chooses, such as a label: what is wrong with it stands in the inner issues.
+function keyProblem(
+  issue: z.core.$ZodIssueInvalidKey,
+  path: FieldPath,
+  document: InputDocument,
+): Problem {
+  const wanted = issue.issues.map((inner) => `${verb(inner)} ${expectation(inner)}`).join(' and ');
+  return {
+    code: 'INVALID_KEY',
+    ...document.placeOfKey(path),
+    message: `is not a key to be used here: it must ${wanted}.`,
+  };
 }
 
 // Of the alternatives of a union, the one whose complaints lie deepest is what the writer meant.
@@ -80,64 +98,6 @@ function describe(issue: Issue, path: FieldPath, document: InputDocument): Probl
     message: `must ${verb(issue)} ${expectation(issue)}, found ${show(found)}.`,
     ...(hint === undefined ? {} : { hint }),
   };
-}
-
-// A list or text has a size; everything else is what it is.
-const verb = (issue: Issue): string =>
-  'origin' in issue && (issue.origin === 'array' || issue.origin === 'string') ? 'have' : 'be';
-
-function expectation(issue: Issue): string {
-  switch (issue.code) {
-    case 'invalid_type':
-      return NAMES_OF_TYPES[issue.expected] ?? `a ${issue.expected}`;
-    case 'too_small':
-      return `${issue.inclusive === true ? 'at least' : 'above'} ${issue.minimum}${ofWhat(issue.origin, issue.minimum)}`;
-    case 'too_big':
-      return `${issue.inclusive === true ? 'at most' : 'below'} ${issue.maximum}${ofWhat(issue.origin, issue.maximum)}`;
-    case 'invalid_value':
-      return issue.values.length === 1
-        ? show(issue.values[0])
-        : `one of ${issue.values.map(String).join(', ')}`;
-    case 'invalid_union':
-      return 'one of the forms this key takes';
-    default:
-      return issue.message;
-  }
-}
-
-function ofWhat(origin: string, count: number | bigint): string {
-  const one = Number(count) === 1;
-  if (origin === 'string') return one ? ' character' : ' characters';
-  if (origin === 'array') return one ? ' entry' : ' entries';
-  return '';
-}
-
-const NAMES_OF_TYPES: Readonly<Record<string, string>> = {
-  number: 'a number',
-  int: 'a whole number',
-  string: 'text',
-  boolean: 'true or false',
-  object: 'a group of keys',
-  array: 'a list',
-};
-
-function hintFor(issue: Issue, found: unknown): string | undefined {
-  if (issue.code === 'invalid_value' && typeof found === 'string') {
-    return suggest(found, issue.values.map(String));
-  }
-  if (issue.code !== 'invalid_type' || typeof found !== 'string') return undefined;
-  if (/^[+-]?\d+,\d+$/.test(found)) return 'Write the decimal mark as a point.';
-  if (/^[+-]?[\d.]+\s*\D+$/.test(found)) return 'Write the number alone: the key names the unit.';
-  return undefined;
-}
-
-function show(found: unknown): string {
-  if (found === null) return 'nothing';
-  if (Array.isArray(found)) return `a list of ${found.length}`;
-  if (typeof found === 'object') return 'a group of keys';
-  if (typeof found === 'string') return `"${found.slice(0, 60)}"`;
-  // JSON has no word for what is not finite.
-  return typeof found === 'number' ? String(found) : JSON.stringify(found);
 }
 
 const valueAt = (value: unknown, path: FieldPath): unknown =>

@@ -32,13 +32,14 @@ export function readInput(file: string): InputDocument {
  */
 export function parseInput(text: string, file: string): InputDocument {
   const lines = new LineCounter();
-  const document = parseDocument(text, { lineCounter: lines, prettyErrors: false });
+  const document = parsed(text, file, lines);
   if (document.errors.length > 0) {
     throw new Fault(
       'input',
       document.errors.map((error) => {
         const { line, col } = lines.linePos(error.pos[0]);
-        return { code: 'YAML_SYNTAX', file, line, column: col, message: asSentence(error.message) };
+        const message = YAML_MESSAGES[error.code] ?? asSentence(error.message);
+        return { code: 'YAML_SYNTAX', file, line, column: col, message };
       }),
     );
   }
@@ -56,6 +57,29 @@ export function parseInput(text: string, file: string): InputDocument {
   };
 }
 
+// What users meet most, in their words instead of a parser's.
+const YAML_MESSAGES: Readonly<Record<string, string>> = {
+  DUPLICATE_KEY: 'the key stands a second time in the same group.',
+  MULTIPLE_DOCS: 'a second document starts here: keep one in a file.',
+  MULTILINE_IMPLICIT_KEY:
+    'the line is not "key: value": look for a missing colon, a missing space behind it, or indentation.',
+  TAB_AS_INDENT: 'indentation is by spaces, found a tab.',
+  BAD_ALIAS: 'an alias (*name) needs its anchor (&name) before it.',
+};
+
+function parsed(text: string, file: string, lineCounter: LineCounter) {
+  try {
+    return parseDocument(text, { lineCounter, prettyErrors: false });
+  } catch (error) {
+    if (!(error instanceof RangeError)) throw error;
+    throw new Fault('input', {
+      code: 'YAML_SYNTAX',
+      file,
+      message: 'groups and lists are nested too deeply to be read.',
+    });
+  }
+}
+
 function readText(file: string): string {
   try {
     const { size } = statSync(file);
@@ -66,9 +90,22 @@ function readText(file: string): string {
         message: `an input file has at most ${LARGEST_DOCUMENT_BYTES} bytes, found ${size}.`,
       });
     }
-    return readFileSync(file, 'utf8');
+    return decoded(readFileSync(file), file);
   } catch (error) {
     throw worldFault(error, file);
+  }
+}
+
+function decoded(bytes: Uint8Array, file: string): string {
+  try {
+    return new TextDecoder('utf-8', { fatal: true, ignoreBOM: true }).decode(bytes);
+  } catch {
+    throw new Fault('input', {
+      code: 'NOT_TEXT',
+      file,
+      message: 'is not text in UTF-8.',
+      hint: 'Save it as UTF-8 in your editor; a file of another kind may have been given by mistake.',
+    });
   }
 }
 

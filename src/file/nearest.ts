@@ -1,7 +1,11 @@
 /** The hint that goes with an unknown word: the nearest known one, or all of them. */
-export function suggest(word: string, known: readonly string[]): string {
+export const suggest = (word: string, known: readonly string[]): string =>
+  suggestNear(word, known) ?? `Known here: ${known.join(', ')}.`;
+
+/** The nearest known word as a hint, if there is one near enough. */
+export function suggestNear(word: string, known: readonly string[]): string | undefined {
   const meant = nearest(word, known);
-  return meant === undefined ? `Known here: ${known.join(', ')}.` : `Did you mean ${meant}?`;
+  return meant === undefined ? undefined : `Did you mean ${meant}?`;
 }
 
 /**

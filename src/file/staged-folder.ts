@@ -72,18 +72,22 @@ export class StagedFolder {
   /** Puts the staged folder in the place of the target, which it replaces whole. */
   commit(): void {
     try {
+      if (existsSync(this.target)) {
+        writeFileSync(join(this.target, SET_ASIDE), '');
+        renameSync(this.target, this.#previous);
+      }
       rmSync(join(this.#staging, OWNER));
-      if (existsSync(this.target)) renameSync(this.target, this.#previous);
       renameSync(this.#staging, this.target);
-      rmSync(this.#previous, { recursive: true, force: true });
     } catch (error) {
+      restore(this.target, this.#previous);
       throw worldFault(error, this.target);
     }
+    removeQuietly(this.#previous);
   }
 
   /** Removes what was staged; the target stays as it was. */
   abandon(): void {
-    rmSync(this.#staging, { recursive: true, force: true });
+    removeQuietly(this.#staging);
   }
 }
 
@@ -140,7 +144,10 @@ export class StagedFile {
   }
 }
 
+/** Marks a staging folder, and names the process that writes it. */
 const OWNER = '.owner';
+/** Marks a folder that is being replaced. */
+const SET_ASIDE = '.set-aside';
 
 const companions = (target: string): { staging: string; previous: string } => {
   const beside = (suffix: string): string =>
@@ -149,25 +156,48 @@ const companions = (target: string): { staging: string; previous: string } => {
 };
 
 /**
- * Mends the one state that a kill between two renames can leave: the old folder set aside and the
- * new one not yet in place. Readers of a folder call this first.
+ * Mends what a kill between two renames can leave: the old folder set aside and the new one not yet
+ * in place, or in place and the old one not yet gone. Readers of a folder call this first. Folders
+ * of the same names that are not ours are left alone.
  */
 export function recoverFolder(target: string): void {
   const { previous } = companions(resolve(target));
-  if (!existsSync(previous)) return;
-  if (existsSync(target)) rmSync(previous, { recursive: true });
-  else renameSync(previous, target);
+  const ours = existsSync(join(previous, SET_ASIDE));
+  if (ours && existsSync(target)) removeQuietly(previous);
+  else if (ours || existsSync(join(target, SET_ASIDE))) restore(resolve(target), previous);
+}
+
+function restore(target: string, previous: string): void {
+  if (existsSync(join(previous, SET_ASIDE)) && !existsSync(target)) renameSync(previous, target);
+  rmSync(join(target, SET_ASIDE), { force: true });
+}
+
+// What was to be done is done, or has failed for a reason that matters more.
+function removeQuietly(folder: string): void {
+  try {
+    rmSync(folder, { recursive: true, force: true });
+  } catch {
+    return;
+  }
 }
 
 function claim(staging: string): void {
   if (existsSync(staging)) {
     const owner = readOwner(staging);
-    if (owner !== undefined && owner !== process.pid && isAlive(owner)) {
+    if (owner === undefined) {
+      throw new Fault('world', {
+        code: 'BUSY',
+        file: staging,
+        message: 'is in the way: it is needed for writing, and holds something else.',
+        hint: 'Move it elsewhere.',
+      });
+    }
+    if (owner !== process.pid && isAlive(owner)) {
       throw new Fault('world', {
         code: 'BUSY',
         file: staging,
         message: `process ${owner} is writing this folder.`,
-        hint: 'Wait for it, or remove the folder if that process is not ours.',
+        hint: 'Wait for it, or remove the folder if that process is another program.',
       });
     }
     rmSync(staging, { recursive: true });

@@ -1,12 +1,13 @@
 /** The keys of a datasheet file: one definition checks it, types it and becomes its JSON Schema. */
 import { z } from 'zod';
+import { nameDefinition } from '../file/name-definition.js';
 import { TECHNOLOGIES, type TechnologyName } from './technology.js';
 
 const technologyNames = Object.keys(TECHNOLOGIES) as [TechnologyName, ...TechnologyName[]];
 
 export const datasheetDefinition = z
   .strictObject({
-    name: z.string().min(1).max(80).describe('Name of the module, for reports.'),
+    name: nameDefinition('Name of the module, for reports.'),
     technology: z.enum(technologyNames).describe('Material of the cells.'),
     cells_in_series: z
       .int()

@@ -1,6 +1,7 @@
 /** The datasheet file: what a user copies from a module's datasheet. */
 import { Fault, type Problem } from '../fault.js';
 import { interpret } from '../file/definition.js';
+import { refuseOtherKinds } from '../file/document-kind.js';
 import type { InputDocument } from '../file/document.js';
 import { fromCelsius } from '../quantities.js';
 import { datasheetDefinition, type DatasheetEntries } from './datasheet-definition.js';
@@ -20,6 +21,7 @@ export interface DatasheetReading {
  * file is in it, with its place.
  */
 export function parseDatasheet(document: InputDocument): DatasheetReading {
+  refuseOtherKinds(document, 'datasheet');
   const entries = interpret(document, datasheetDefinition);
   const { errors, warnings } = datasheetProblems(entries, document);
   if (errors.length > 0) throw new Fault('input', errors);

@@ -1,8 +1,12 @@
 /** The model file: a fitted module, which every command takes in place of a datasheet. */
+import { existsSync, readFileSync, statSync } from 'node:fs';
 import { stringify } from 'yaml';
 import { z } from 'zod';
+import { nameDefinition } from '../file/name-definition.js';
+import { Fault } from '../fault.js';
 import { interpret } from '../file/definition.js';
 import type { InputDocument } from '../file/document.js';
+import { writeWhole } from '../file/written-file.js';
 import { STC_TEMPERATURE, thermalVoltage, type Volts } from '../quantities.js';
 import { Module } from './module.js';
 import { TECHNOLOGIES, type TechnologyName } from './technology.js';
@@ -12,7 +16,7 @@ const technologyNames = Object.keys(TECHNOLOGIES) as [TechnologyName, ...Technol
 export const modelDefinition = z
   .strictObject({
     model: z.literal('single-diode').describe('Marks the file as a model of this kind.'),
-    name: z.string().min(1).max(80).describe('Name of the module, for reports.'),
+    name: nameDefinition('Name of the module, for reports.'),
     technology: z.enum(technologyNames).describe('Material of the cells.'),
     cells_in_series: z.int().min(1).max(400).describe('Cells in series.'),
     photocurrent_A: z.number().positive().max(200).describe('Iph at STC.'),
@@ -48,6 +52,23 @@ export function parseModel(document: InputDocument): Module {
       shortCircuitCoefficient: entries.alpha_isc_A_per_K,
     },
   );
+}
+
+/**
+ * Writes a model file. Only an older model file is replaced: anything else of that name is likely
+ * there by mistake, such as the datasheet itself.
+ * @throws Fault `IN_THE_WAY`, or those of `writeWhole`.
+ */
+export function writeModel(path: string, module: Module): void {
+  if (existsSync(path) && statSync(path).isFile() && !/^model:/m.test(readFileSync(path, 'utf8'))) {
+    throw new Fault('input', {
+      code: 'IN_THE_WAY',
+      file: path,
+      message: 'is there and is not a model file: it is left as it is.',
+      hint: 'Choose another name, or remove the file first.',
+    });
+  }
+  writeWhole(path, modelText(module));
 }
 
 /** The text of a model file. Numbers are written so that they read back to within 1 ulp. */

@@ -1,6 +1,6 @@
 import { log } from '../numeric/logarithm.js';
 import { wrightOmega } from '../numeric/wright-omega.js';
-import type { Amperes, AmperesPerVolt, Volts } from '../quantities.js';
+import type { Amperes, AmperesPerVolt, Ohms, Siemens, Volts } from '../quantities.js';
 import type { Curve, Peak } from './curve.js';
 import {
   currentAtJunction,
@@ -28,31 +28,50 @@ import { singleDiodePeak } from './single-diode-peak.js';
  * `singleDiodePeak`. Any finite voltage is allowed.
  */
 export class SingleDiodeCurve implements Curve {
-  readonly diode: SingleDiode;
-  /** x at V = 0. All else is made anew at each point: every number kept costs an allocation. */
-  readonly #offset: number;
+  readonly #numbers: Numbers;
   #openCircuitVoltage: Volts | undefined;
   #peaks: readonly Peak[] | undefined;
 
   constructor(diode: SingleDiode) {
-    this.diode = diode;
     const { photocurrent, saturationCurrent, idealityVoltage, seriesResistance } = diode;
-    const divisor = 1 + seriesResistance * diode.shuntConductance;
+    const { shuntConductance } = diode;
+    const divisor = 1 + seriesResistance * shuntConductance;
     const perAmpere = seriesResistance / (idealityVoltage * divisor);
-    this.#offset =
-      log(perAmpere * saturationCurrent) + perAmpere * (photocurrent + saturationCurrent);
+    this.#numbers = [
+      photocurrent,
+      saturationCurrent,
+      idealityVoltage,
+      seriesResistance,
+      shuntConductance,
+      log(perAmpere * saturationCurrent) + perAmpere * (photocurrent + saturationCurrent),
+    ];
+  }
+
+  get diode(): SingleDiode {
+    const numbers = this.#numbers;
+    return {
+      photocurrent: numbers[PHOTOCURRENT],
+      saturationCurrent: numbers[SATURATION_CURRENT],
+      idealityVoltage: numbers[IDEALITY_VOLTAGE],
+      seriesResistance: numbers[SERIES_RESISTANCE],
+      shuntConductance: numbers[SHUNT_CONDUCTANCE],
+    };
   }
 
   current(voltage: Volts): Amperes {
-    const { photocurrent, saturationCurrent, idealityVoltage, seriesResistance } = this.diode;
-    const { shuntConductance } = this.diode;
+    const numbers = this.#numbers;
+    const photocurrent = numbers[PHOTOCURRENT];
+    const saturationCurrent = numbers[SATURATION_CURRENT];
+    const idealityVoltage = numbers[IDEALITY_VOLTAGE];
+    const seriesResistance = numbers[SERIES_RESISTANCE];
+    const shuntConductance = numbers[SHUNT_CONDUCTANCE];
     // The factors 1 tell the compiler that the calls give numbers, so that the value returned from
     // the common path needs no box.
     if (seriesResistance < NO_DROP * idealityVoltage) {
       return 1 * currentAtJunction(this.diode, voltage);
     }
     const divisor = 1 + seriesResistance * shuntConductance;
-    const omega = wrightOmega(this.#offset + voltage / (idealityVoltage * divisor));
+    const omega = wrightOmega(numbers[OFFSET] + voltage / (idealityVoltage * divisor));
     const source = photocurrent + saturationCurrent - voltage * shuntConductance;
     const current = source / divisor - (idealityVoltage / seriesResistance) * omega;
     const isLeaky = saturationCurrent > LEAKY * photocurrent;
@@ -60,18 +79,21 @@ export class SingleDiodeCurve implements Curve {
   }
 
   slope(voltage: Volts): AmperesPerVolt {
-    const { idealityVoltage, seriesResistance, shuntConductance } = this.diode;
+    const numbers = this.#numbers;
+    const idealityVoltage = numbers[IDEALITY_VOLTAGE];
+    const seriesResistance = numbers[SERIES_RESISTANCE];
+    const shuntConductance = numbers[SHUNT_CONDUCTANCE];
     if (seriesResistance < NO_DROP * idealityVoltage) {
       return -junctionConductance(this.diode, voltage);
     }
     const divisor = 1 + seriesResistance * shuntConductance;
-    const omega = wrightOmega(this.#offset + voltage / (idealityVoltage * divisor));
+    const omega = wrightOmega(numbers[OFFSET] + voltage / (idealityVoltage * divisor));
     return -(shuntConductance + omega / ((1 + omega) * seriesResistance)) / divisor;
   }
 
   /** Exactly zero in the dark, where rounding would leave a trace of the saturation current. */
   get shortCircuitCurrent(): Amperes {
-    return this.diode.photocurrent === 0 ? 0 : this.current(0);
+    return this.#numbers[PHOTOCURRENT] === 0 ? 0 : this.current(0);
   }
 
   get openCircuitVoltage(): Volts {
@@ -84,6 +106,25 @@ export class SingleDiodeCurve implements Curve {
     return this.#peaks;
   }
 }
+
+/**
+ * The diode, and x at V = 0, as doubles side by side. As fields each would be an object of its own,
+ * and making them would take longer than solving the equation.
+ */
+type Numbers = readonly [
+  photocurrent: Amperes,
+  saturationCurrent: Amperes,
+  idealityVoltage: Volts,
+  seriesResistance: Ohms,
+  shuntConductance: Siemens,
+  offset: number,
+];
+const PHOTOCURRENT = 0;
+const SATURATION_CURRENT = 1;
+const IDEALITY_VOLTAGE = 2;
+const SERIES_RESISTANCE = 3;
+const SHUNT_CONDUCTANCE = 4;
+const OFFSET = 5;
 
 /** One Newton step on the equation itself. */
 function refined(diode: SingleDiode, voltage: Volts, current: Amperes): Amperes {

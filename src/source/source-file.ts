@@ -1,4 +1,5 @@
 import { Fault, type Problem } from '../fault.js';
+import { kindOf, refuseOtherKinds } from '../file/document-kind.js';
 import { readInput, type InputDocument } from '../file/document.js';
 import { parseDatasheet } from './datasheet-file.js';
 import { fitDatasheet, type Fit } from './fit/fit.js';
@@ -27,7 +28,8 @@ export function loadSource(file: string): SourceReading {
  * enough to the datasheet to stand for its module.
  */
 export function parseSource(document: InputDocument): SourceReading {
-  if (isModel(document.value)) return { module: parseModel(document), warnings: [] };
+  refuseOtherKinds(document, 'datasheet', 'model');
+  if (kindOf(document) === 'model') return { module: parseModel(document), warnings: [] };
   const { file } = document;
   const { datasheet, warnings } = parseDatasheet(document);
   const fit = fitDatasheet(datasheet);
@@ -46,6 +48,3 @@ export function parseSource(document: InputDocument): SourceReading {
   const located = fit.warnings.map((warning) => ({ ...warning, file }));
   return { module: fit.module, fit, warnings: [...warnings, ...located] };
 }
-
-const isModel = (value: unknown): boolean =>
-  typeof value === 'object' && value !== null && 'model' in value;

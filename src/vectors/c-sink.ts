@@ -1,4 +1,4 @@
-import { Fault } from '../fault.js';
+import { Fault, type Problem } from '../fault.js';
 import type { ByteWriter } from './binary-sink.js';
 import { physicalText } from './physical-text.js';
 import type { Column, Product, Section } from './product.js';
@@ -54,17 +54,23 @@ const cIdentifier = (name: string): string => name.toLowerCase().replace(/[^a-z0
 
 /** @throws Fault `C_OBJECT_TOO_LARGE`. */
 export function refuseLargeObjects(product: Product): void {
-  for (const section of product.sections) {
-    const bytes = section.recordSize * section.count;
-    if (bytes <= LARGEST_OBJECT) continue;
-    throw new Fault('input', {
-      code: 'C_OBJECT_TOO_LARGE',
-      message:
-        `the ${section.noun}s of ${product.name} would be a C array of ${bytes} bytes; ` +
-        `C99 promises ${LARGEST_OBJECT} for one object.`,
-      hint: 'Leave "c" out of the outputs of this product, or ask for fewer records.',
-    });
-  }
+  const problem = unfitForC(product);
+  if (problem !== undefined) throw new Fault('input', problem);
+}
+
+/** Why a product cannot be written as C, if it cannot. */
+export function unfitForC({ name, sections }: Product): Problem | undefined {
+  const large = sections.find(({ recordSize, count }) => recordSize * count > LARGEST_OBJECT);
+  if (large === undefined) return undefined;
+  const { noun, recordSize, count } = large;
+  return {
+    code: 'C_OBJECT_TOO_LARGE',
+    message:
+      `the ${count} ${noun}s of ${name} would be a C array of ${recordSize * count} bytes; ` +
+      `C99 promises ${LARGEST_OBJECT} for one object, which is ` +
+      `${Math.floor(LARGEST_OBJECT / recordSize)} ${noun}s.`,
+    hint: 'Leave c out of the outputs here, or ask for fewer records.',
+  };
 }
 
 function headerText(product: Product, prefix: string): string {

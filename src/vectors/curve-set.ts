@@ -65,10 +65,11 @@ function tabulate(
   voltage: Quantizer,
 ): CurveTable {
   const curve = source.at(conditions);
+  const peaks = curve.peaks();
   const voltageCodes = atConditions(conditions, () =>
-    placeVoltageCodes(curve.openCircuitVoltage, points, voltage),
+    placeVoltageCodes(curve.openCircuitVoltage, points, voltage, peaks),
   );
-  return { conditions, curve, peaks: curve.peaks(), voltageCodes };
+  return { conditions, curve, peaks, voltageCodes };
 }
 
 function curveSection(tables: readonly CurveTable[], points: number, layout: Layout): Section {

@@ -37,17 +37,20 @@ export interface Emission {
  */
 export function emitSuite(suiteFile: string, folder: string, options: EmitOptions = {}): Emission {
   const suite = loadSuite(suiteFile);
-  refuseForeignFolder(folder);
-  for (const { build, outputs } of suite.products) {
-    inSuite(suiteFile, () => {
-      refuseUnfit(build(), outputs);
+  refuseForeignFolder(
+    folder,
+    suite.inputs.map(({ file }) => file),
+  );
+  for (const planned of suite.products) {
+    inPlace(planned, () => {
+      refuseUnfit(planned.build(), planned.outputs);
     });
   }
   const staged = new StagedFolder(folder);
   try {
     const inputs = writeInputs(staged, suite.inputs);
     const products = suite.products.map((planned) =>
-      inSuite(suiteFile, () => writeProduct(staged, planned, options)),
+      inPlace(planned, () => writeProduct(staged, planned, options)),
     );
     const manifest = newManifest(suite.name, inputs, products);
     staged.write(MANIFEST_NAME, manifestText(manifest));
@@ -106,14 +109,16 @@ function listing(product: Product, source: string, files: ListedProduct['files']
 }
 
 /** Faults without a place are about what the suite file asked for. */
-function inSuite<T>(file: string, work: () => T): T {
+function inPlace<T>({ place }: PlannedProduct, work: () => T): T {
   try {
     return work();
   } catch (error) {
     if (!(error instanceof Fault)) throw error;
     throw new Fault(
       error.kind,
-      error.problems.map((problem) => ({ file, ...problem })),
+      error.problems.map((problem) =>
+        problem.file === undefined ? { ...problem, ...place } : problem,
+      ),
       { cause: error },
     );
   }

@@ -1,3 +1,4 @@
+import { Fault } from '../fault.js';
 import type { Product, Section } from './product.js';
 
 /**
@@ -16,8 +17,7 @@ export type Progress = (done: number, total: number) => void;
 
 /**
  * Encodes a product and sends it to its sinks.
- * @throws Fault of a format that refuses, with the section and record in `field`; whatever a sink
- * throws.
+ * @throws Fault of a format that refuses, naming record and column; whatever a sink throws.
  */
 export function pour(product: Product, sinks: readonly Sink[], progress?: Progress): void {
   const total = product.sections.reduce((sum, section) => sum + section.count, 0);
@@ -43,11 +43,26 @@ function recordEncoder(section: Section): (index: number) => Float64Array {
   const { columns } = section;
   const values = new Float64Array(columns.length);
   const codes = new Float64Array(columns.length);
+  let column = 0;
   return (index) => {
     section.values(index, values);
-    for (let column = 0; column < columns.length; column++) {
-      codes[column] = columns[column]!.quantizer.encode(values[column]!);
+    try {
+      for (column = 0; column < columns.length; column++) {
+        codes[column] = columns[column]!.quantizer.encode(values[column]!);
+      }
+    } catch (error) {
+      throw named(error, `${section.noun} ${index}, ${columns[column]!.name}`);
     }
     return codes;
   };
+}
+
+// A quantizer knows the value it refuses, but not what it is of.
+function named(error: unknown, what: string): unknown {
+  if (!(error instanceof Fault)) return error;
+  const problems = error.problems.map((problem) => ({
+    ...problem,
+    message: `${what}: ${problem.message}`,
+  }));
+  return new Fault(error.kind, problems, { cause: error });
 }

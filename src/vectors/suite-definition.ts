@@ -2,7 +2,7 @@
 import { z } from 'zod';
 import { codeFormatDefinition } from '../fixed/file-definition.js';
 
-const OUTPUT_FORMS = ['binary', 'c', 'csv', 'json'] as const;
+export const OUTPUT_FORMS = ['binary', 'c', 'csv', 'json'] as const;
 export type OutputForm = (typeof OUTPUT_FORMS)[number];
 
 const outputs = z
@@ -80,7 +80,9 @@ export const suiteDefinition = z
     formats,
     curves: curves.optional(),
     timeline: timeline.optional(),
-    outputs: outputs.default([...OUTPUT_FORMS]),
+    outputs: outputs
+      .optional()
+      .describe('Left out: all four, but no C where an array would pass what C99 promises.'),
   })
   .meta({
     title: 'Hillproof suite',

@@ -1,5 +1,5 @@
 import { existsSync, readdirSync, readFileSync, statSync } from 'node:fs';
-import { join, relative, sep } from 'node:path';
+import { join, relative, resolve, sep } from 'node:path';
 import { Fault } from '../fault.js';
 import { worldFault } from '../file/world-fault.js';
 import { listedFiles, MANIFEST_NAME, parseManifest, type Manifest } from './manifest.js';
@@ -8,16 +8,23 @@ import { listedFiles, MANIFEST_NAME, parseManifest, type Manifest } from './mani
 export function readManifest(folder: string): Manifest {
   const file = join(folder, MANIFEST_NAME);
   if (!existsSync(file)) {
-    throw new Fault('check', {
+    const isFolder = existsSync(folder) && statSync(folder).isDirectory();
+    throw new Fault(isFolder ? 'check' : 'input', {
       code: 'NOT_A_SUITE',
       file: folder,
-      message: existsSync(folder)
+      message: isFolder
         ? `holds no ${MANIFEST_NAME}: it is not a suite, or not all of one.`
-        : 'there is no such folder.',
-      hint: 'Build it with hillproof emit.',
+        : existsSync(folder)
+          ? 'is a file; expected the folder of a suite.'
+          : 'there is no such folder.',
+      hint: 'Build a suite with hillproof emit SUITE --out FOLDER.',
     });
   }
-  return parseManifest(readFileSync(file, 'utf8'), file);
+  try {
+    return parseManifest(readFileSync(file, 'utf8'), file);
+  } catch (error) {
+    throw worldFault(error, file);
+  }
 }
 
 /** Every file below a folder, as sorted paths with forward slashes. */
@@ -33,10 +40,28 @@ export function filesBelow(folder: string): string[] {
 }
 
 /**
- * A folder is replaced whole, so one that holds anything but a suite is left alone.
+ * A folder is replaced whole, so one that holds anything but a suite is left alone, and so is one
+ * around the inputs or the place where the program runs.
+ * @param inputs Paths of the input files.
  * @throws Fault `NOT_A_SUITE` naming what is in the way.
  */
-export function refuseForeignFolder(folder: string): void {
+export function refuseForeignFolder(folder: string, inputs: readonly string[]): void {
+  if (folder === '') {
+    throw new Fault('input', {
+      code: 'NOT_A_SUITE',
+      message: 'the folder to build must have a name, found nothing.',
+    });
+  }
+  for (const path of [process.cwd(), ...inputs.map((file) => resolve(file))]) {
+    if (path === resolve(folder) || path.startsWith(resolve(folder) + sep)) {
+      throw new Fault('input', {
+        code: 'NOT_A_SUITE',
+        file: folder,
+        message: `holds ${path}, and would be replaced whole.`,
+        hint: 'Give a folder of its own to the suite, such as --out vectors.',
+      });
+    }
+  }
   if (!existsSync(folder)) return;
   if (!statSync(folder).isDirectory()) {
     throw new Fault('input', {
@@ -53,7 +78,7 @@ export function refuseForeignFolder(folder: string): void {
   throw new Fault('input', {
     code: 'NOT_A_SUITE',
     file: folder,
-    message: `holds ${foreign.length} files that are not of a suite, such as ${foreign[0]!}.`,
+    message: `holds what is not of a suite, such as ${foreign[0]!} (${foreign.length} in all).`,
     hint: 'The folder would be replaced whole: choose an empty one, or clear it first.',
   });
 }

@@ -1,6 +1,7 @@
 import { dirname, isAbsolute, join } from 'node:path';
-import { Fault, type Problem } from '../fault.js';
+import { Fault, type Place, type Problem } from '../fault.js';
 import { fieldProblem, interpret } from '../file/definition.js';
+import { refuseOtherKinds } from '../file/document-kind.js';
 import { readInput, type FieldPath, type InputDocument } from '../file/document.js';
 import type { CodeFormat } from '../fixed/code-format.js';
 import type { CodedQuantity } from '../fixed/coded-quantity.js';
@@ -13,7 +14,13 @@ import { parseWeather } from '../weather/load.js';
 import type { Weather } from '../weather/weather.js';
 import { curveSet } from './curve-set.js';
 import type { Product, ProductFormats } from './product.js';
-import { suiteDefinition, type OutputForm, type SuiteEntries } from './suite-definition.js';
+import { unfitForC } from './c-sink.js';
+import {
+  OUTPUT_FORMS,
+  suiteDefinition,
+  type OutputForm,
+  type SuiteEntries,
+} from './suite-definition.js';
 import { timeline } from './timeline.js';
 
 /** A suite read and checked: everything that `emit` needs. */
@@ -35,6 +42,8 @@ export interface SuiteInput {
 export interface PlannedProduct {
   readonly source: string;
   readonly outputs: readonly OutputForm[];
+  /** The part of the suite file that asks for it. */
+  readonly place: Place;
   /** Builds it afresh, with its counts of saturated values at zero. */
   readonly build: () => Product;
 }
@@ -48,6 +57,7 @@ export type FindInput = (namedAs: string) => string;
  */
 export function loadSuite(file: string, find?: FindInput): Suite {
   const document = readInput(file);
+  refuseOtherKinds(document, 'suite');
   const entries = interpret(document, suiteDefinition);
   const findInput =
     find ?? ((namedAs) => (isAbsolute(namedAs) ? namedAs : join(dirname(file), namedAs)));
@@ -57,14 +67,20 @@ export function loadSuite(file: string, find?: FindInput): Suite {
     ([label, namedAs]) => [label, reader.source(label, namedAs)] as const,
   );
   const weather = entries.weather === undefined ? undefined : reader.weather(entries.weather);
-  reader.checkProducts(entries, sources.length);
+  reader.checkProducts(entries, sources.length, formats);
   reader.throwProblems();
-  return {
-    name: entries.suite,
-    inputs: reader.inputs,
-    warnings: reader.warnings,
-    products: sources.flatMap(([label, source]) => plan(entries, label, source!, formats, weather)),
-  };
+  const products = sources.flatMap(([label, source]) =>
+    plan(entries, label, source!, formats, weather).map((wish) =>
+      reader.planned(wish, entries[wish.part]?.outputs ?? entries.outputs),
+    ),
+  );
+  return { name: entries.suite, inputs: reader.inputs, warnings: reader.warnings, products };
+}
+
+/** A product before it is settled in which forms it is written. */
+interface ProductWish extends Pick<PlannedProduct, 'source' | 'build'> {
+  /** The key of the suite file that asks for it. */
+  readonly part: 'curves' | 'timeline';
 }
 
 function plan(
@@ -73,14 +89,14 @@ function plan(
   source: Source,
   formats: ProductFormats,
   weather: Weather | undefined,
-): PlannedProduct[] {
+): ProductWish[] {
   const { suite, curves, timeline: samples } = entries;
-  const products: PlannedProduct[] = [];
+  const products: ProductWish[] = [];
   if (curves !== undefined) {
     const conditions = curveConditions(curves);
     products.push({
       source: label,
-      outputs: curves.outputs ?? entries.outputs,
+      part: 'curves',
       build: () =>
         curveSet({
           name: `${suite}-${label}-curves`,
@@ -94,7 +110,7 @@ function plan(
   if (samples !== undefined && weather !== undefined) {
     products.push({
       source: label,
-      outputs: samples.outputs ?? entries.outputs,
+      part: 'timeline',
       build: () =>
         timeline({
           name: `${suite}-${label}-timeline`,
@@ -106,6 +122,20 @@ function plan(
     });
   }
   return products;
+}
+
+// The product of codes is what firmware computes; where there is none, power needs its own.
+function powerFormat(voltage: CodeFormat, current: CodeFormat): CodeFormat {
+  try {
+    return productFormat(voltage, current);
+  } catch (error) {
+    if (!(error instanceof Fault)) throw error;
+    const hint = 'Give formats.power a format of its own, such as { step: 0.01, bits: 24 }.';
+    throw new Fault(
+      error.kind,
+      error.problems.map((problem) => ({ ...problem, hint })),
+    );
+  }
 }
 
 function curveConditions({ conditions, grid }: NonNullable<SuiteEntries['curves']>): Conditions[] {
@@ -151,7 +181,7 @@ class SuiteReader {
     const current = given('current', 'UQ4.12');
     const power =
       entries.power === undefined
-        ? this.#attempt(['formats'], () => productFormat(voltage, current))
+        ? this.#attempt(['formats'], () => powerFormat(voltage, current))
         : given('power', 'UQ12.20');
     return {
       voltage,
@@ -159,11 +189,38 @@ class SuiteReader {
       power: power ?? voltage,
       irradiance: given('irradiance', { step: 0.1, bits: 16 }),
       temperature: given('temperature', { step: 0.01, bits: 16, signed: true }),
-      time: given('time', { step: 0.001, bits: 32, overflow: 'refuse' }),
+      // A time that is not what it says is no use to anyone.
+      time: { ...given('time', { step: 0.001, bits: 32 }), overflow: 'refuse' },
     };
   }
 
-  checkProducts({ curves, timeline: samples, weather }: SuiteEntries, sourceCount: number): void {
+  /** Asked for by name, every form is written or refused; otherwise those that can hold it. */
+  planned({ source, part, build }: ProductWish, asked?: readonly OutputForm[]): PlannedProduct {
+    const place = { ...this.document.placeOfKey([part]), field: part };
+    if (asked !== undefined) return { source, outputs: asked, place, build };
+    const unfit = unfitForC(build());
+    if (unfit === undefined) return { source, outputs: OUTPUT_FORMS, place, build };
+    this.warnings.push({
+      ...place,
+      ...unfit,
+      message: `is written without C sources: ${unfit.message}`,
+      hint: 'Say outputs: [binary, csv, json] here to have it so without this warning.',
+    });
+    return { source, outputs: OUTPUT_FORMS.filter((form) => form !== 'c'), place, build };
+  }
+
+  checkProducts(
+    { curves, timeline: samples, weather }: SuiteEntries,
+    sourceCount: number,
+    formats: ProductFormats,
+  ): void {
+    if (samples !== undefined && samples.every_s < formats.time.step) {
+      this.#refuse(
+        ['timeline', 'every_s'],
+        `is shorter than a step of the time format (${formats.time.step} s): times would repeat.`,
+        `Give formats.time a finer step, such as { step: ${samples.every_s}, bits: 32 }.`,
+      );
+    }
     if (sourceCount === 0) this.#refuse(['sources'], 'names no source.');
     if (curves === undefined && samples === undefined) {
       this.#refuse([], 'builds nothing: give curves, timeline or both.');
@@ -188,8 +245,9 @@ class SuiteReader {
     return document;
   }
 
-  #refuse(path: FieldPath, message: string): void {
-    this.#problems.push(fieldProblem(this.document, path, { code: 'INCOMPLETE_SUITE', message }));
+  #refuse(path: FieldPath, message: string, hint?: string): void {
+    const problem = { code: 'SUITE', message, ...(hint === undefined ? {} : { hint }) };
+    this.#problems.push(fieldProblem(this.document, path, problem));
   }
 
   // A Fault without a place of its own belongs to the entry of the suite file it came from.

@@ -2,7 +2,6 @@ import { createHash } from 'node:crypto';
 import { closeSync, existsSync, openSync, readSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Problem } from '../fault.js';
-import { worldFault } from '../file/world-fault.js';
 import { listedFiles, MANIFEST_NAME, type Manifest } from './manifest.js';
 import { filesBelow } from './suite-folder.js';
 
@@ -13,6 +12,9 @@ export function fileProblems(folder: string, manifest: Manifest): Problem[] {
     const file = join(folder, path);
     if (!existsSync(file)) return [{ code: 'FILE_ABSENT', file, message: 'is listed but absent.' }];
     const found = digest(file);
+    if (found === undefined) {
+      return [{ code: 'FILE_CHANGED', file, message: 'cannot be read as a file.' }];
+    }
     if (found.bytes !== bytes) {
       const message = `must have ${bytes} bytes, found ${found.bytes}.`;
       return [{ code: 'FILE_CHANGED', file, message }];
@@ -31,7 +33,7 @@ export function fileProblems(folder: string, manifest: Manifest): Problem[] {
   return [...damaged, ...strangers];
 }
 
-function digest(file: string): { readonly bytes: number; readonly sha256: string } {
+function digest(file: string): { readonly bytes: number; readonly sha256: string } | undefined {
   const hash = createHash('sha256');
   const piece = Buffer.alloc(PIECE);
   let bytes = 0;
@@ -45,8 +47,8 @@ function digest(file: string): { readonly bytes: number; readonly sha256: string
     } finally {
       closeSync(descriptor);
     }
-  } catch (error) {
-    throw worldFault(error, file);
+  } catch {
+    return undefined;
   }
   return { bytes, sha256: hash.digest('hex') };
 }

@@ -19,8 +19,12 @@ import { fileProblems } from './verify-files.js';
 export interface Verification {
   readonly folder: string;
   readonly suite: string;
-  /** What was checked, in words, with how many of it. */
-  readonly checked: readonly { readonly what: string; readonly count: number }[];
+  /** What was checked, in words: how many of it hold, of how many there are. */
+  readonly checked: readonly {
+    readonly what: string;
+    readonly held: number;
+    readonly of: number;
+  }[];
   /** What failed, most telling first; empty if the suite is whole. */
   readonly problems: readonly Problem[];
 }
@@ -40,23 +44,37 @@ export function verifySuite(folder: string, options: VerifyOptions = {}): Verifi
   recoverFolder(folder);
   const manifest = readManifest(folder);
   const problems = fileProblems(folder, manifest);
-  const fileCount =
-    manifest.inputs.length + sum(manifest.products.map(({ files }) => files.length));
-  const checked = [{ what: 'files by size and SHA-256', count: fileCount }];
+  const outputs = sum(manifest.products.map(({ files }) => files.length));
+  const damaged = problems.filter(({ code }) => code !== 'FILE_UNLISTED').length;
   const suite = reloadSuite(folder, manifest, problems);
   let codes = 0;
-  let rebuilt = 0;
+  const wrongCodes: Problem[] = [];
+  const different: Problem[] = [];
+  const rebuilds = suite !== undefined && manifest.tool.version === VERSION;
   manifest.products.forEach((listed, index) => {
     const planned = suite?.products[index];
-    codes += verifyBinary(folder, listed, planned, problems, options);
-    if (planned !== undefined && manifest.tool.version === VERSION) {
-      rebuilt += verifyRebuilt(folder, listed, planned, problems);
+    codes += verifyBinary(folder, listed, planned, wrongCodes, options);
+    if (planned !== undefined && rebuilds) {
+      different.push(...rebuiltProblems(folder, listed, planned));
     }
   });
-  checked.push({ what: 'codes against the model', count: codes });
-  checked.push({ what: 'output files rebuilt byte for byte', count: rebuilt });
-  return { folder, suite: manifest.suite, checked, problems: bounded(problems) };
+  return {
+    folder,
+    suite: manifest.suite,
+    checked: [
+      tally('files by size and SHA-256', outputs + manifest.inputs.length, damaged),
+      tally('codes against the model', codes, wrongCodes.length),
+      tally('output files rebuilt byte for byte', rebuilds ? outputs : 0, different.length),
+    ],
+    problems: bounded([...problems, ...wrongCodes, ...different]),
+  };
 }
+
+const tally = (what: string, of: number, failed: number): Verification['checked'][number] => ({
+  what,
+  held: Math.max(of - failed, 0),
+  of,
+});
 
 const MOST_PROBLEMS = 50;
 
@@ -137,12 +155,11 @@ function limited(complain: Complain): Complain {
   };
 }
 
-function verifyRebuilt(
+function rebuiltProblems(
   folder: string,
   listed: ListedProduct,
   planned: PlannedProduct,
-  problems: Problem[],
-): number {
+): Problem[] {
   const hashes = new Map<string, Hash>();
   const product: Product = planned.build();
   const sinks = sinksFor(product, planned.outputs, (path) => {
@@ -151,15 +168,13 @@ function verifyRebuilt(
     return (chunk) => hash.update(chunk);
   });
   pour(product, sinks);
-  for (const { path, sha256 } of listed.files) {
-    if (hashes.get(path)?.digest('hex') === sha256) continue;
-    problems.push({
+  return listed.files
+    .filter(({ path, sha256 }) => hashes.get(path)?.digest('hex') !== sha256)
+    .map(({ path }) => ({
       code: 'NOT_REPRODUCED',
       file: join(folder, path),
       message: 'the inputs do not give these bytes when built again.',
-    });
-  }
-  return hashes.size;
+    }));
 }
 
 const sum = (counts: readonly number[]): number =>

@@ -7,6 +7,7 @@
  * later ones differ instead. Values are absolute, hence all passes from the second on are alike.
  */
 import { z } from 'zod';
+import { nameDefinition } from '../file/name-definition.js';
 import { TRAPEZOID_TABLE_NAMES, USUAL_SETTLING } from './trapezoid-tables.js';
 
 interface Range {
@@ -37,7 +38,6 @@ const cellTemperature = (what: string) =>
     .meta({ ...CELL_TEMPERATURE_RANGE_C })
     .describe(`${what} (°C).`);
 const duration = (what: string) => z.number().positive().max(LONGEST_S).describe(`${what} (s).`);
-const name = (what: string) => z.string().min(1).max(80).describe(what);
 
 const holdDefinition = z
   .strictObject({ for_s: duration('How long') })
@@ -77,7 +77,7 @@ const repeatDefinition = z
 
 const sequenceDefinition = z
   .strictObject({
-    name: name('Name of this span of time, for scores and reports.').optional(),
+    name: nameDefinition('Name of this span of time, for scores and reports.').optional(),
     get blocks() {
       return blockListDefinition;
     },
@@ -127,7 +127,7 @@ const blockListDefinition = z
 
 export const weatherDefinition = z
   .strictObject({
-    name: name('Name of the weather, for reports.'),
+    name: nameDefinition('Name of the weather, for reports.'),
     irradiance_W_per_m2: irradiance('Irradiance at the start, 0 if left out')
       .meta({ default: START_IRRADIANCE_W_PER_M2 })
       .optional(),

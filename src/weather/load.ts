@@ -1,5 +1,6 @@
 /** The ways in: a file, a parsed document, a definition written in code, a standard sequence. */
 import { Fault } from '../fault.js';
+import { refuseOtherKinds } from '../file/document-kind.js';
 import { interpret } from '../file/definition.js';
 import { fieldText, readInput, type FieldPath, type InputDocument } from '../file/document.js';
 import { trapezoids } from './blocks.js';
@@ -24,6 +25,7 @@ export function loadWeather(file: string): Weather {
  */
 export function parseWeather(document: InputDocument): Weather {
   refuseDeepNesting(document);
+  refuseOtherKinds(document, 'weather');
   const definition = interpret(document, weatherDefinition);
   const mistakes = mistakesIn(definition, document);
   if (mistakes.length > 0) throw new Fault('input', mistakes);

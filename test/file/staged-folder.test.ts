@@ -81,13 +81,34 @@ describe('recovery', () => {
   test('puts the old folder back when the new one never arrived', () => {
     const parent = newFolder();
     mkdirSync(join(parent, '.out.previous'));
+    writeFileSync(join(parent, '.out.previous', '.set-aside'), '');
     recoverFolder(join(parent, 'out'));
     expect(filesOf(parent)).toEqual(['out']);
+    expect(filesOf(join(parent, 'out'))).toEqual([]);
+  });
+
+  test('takes the mark off a folder that was never set aside', () => {
+    const out = newFolder();
+    writeFileSync(join(out, '.set-aside'), '');
+    recoverFolder(out);
+    expect(filesOf(out)).toEqual([]);
+  });
+
+  test('leaves folders alone that only have the names', () => {
+    const parent = newFolder();
+    mkdirSync(join(parent, '.out.previous'));
+    mkdirSync(join(parent, '.out.partial'));
+    writeFileSync(join(parent, '.out.partial', 'data.txt'), 'mine');
+    recoverFolder(join(parent, 'out'));
+    expect(() => new StagedFolder(join(parent, 'out'))).toThrow(/is in the way/);
+    expect(filesOf(parent)).toEqual(['.out.partial', '.out.previous']);
+    expect(filesOf(join(parent, '.out.partial'))).toEqual(['data.txt']);
   });
 
   test('drops the old folder when the new one is in place', () => {
     const parent = newFolder();
     mkdirSync(join(parent, 'out'));
+    writeFileSync(join(parent, 'out', '.set-aside'), '');
     renameSync(join(parent, 'out'), join(parent, '.out.previous'));
     mkdirSync(join(parent, 'out'));
     recoverFolder(join(parent, 'out'));

@@ -1,5 +1,16 @@
 import { createHash } from 'node:crypto';
-import { mkdirSync, mkdtempSync, readdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import {
+  existsSync,
+  lstatSync,
+  mkdirSync,
+  mkdtempSync,
+  readdirSync,
+  readFileSync,
+  rmSync,
+  statSync,
+  symlinkSync,
+  writeFileSync,
+} from 'node:fs';
 import { tmpdir } from 'node:os';
 import { join } from 'node:path';
 import { afterEach, beforeEach, describe, expect, test } from 'vitest';
@@ -62,9 +73,26 @@ describe('writeWhole', () => {
     expect(readFileSync(join(path, 'old'), 'utf8')).toBe('old');
   });
 
-  test('makes the folders on the way', () => {
-    const path = join(folder, 'new', 'model.yaml');
-    writeWhole(path, 'new');
-    expect(readFileSync(path, 'utf8')).toBe('new');
+  test('refuses a folder that is not there, and makes none', () => {
+    expect(() => writeWhole(join(folder, 'new', 'model.yaml'), 'new')).toThrow(
+      /no such file or folder/,
+    );
+    expect(existsSync(join(folder, 'new'))).toBe(false);
+  });
+
+  test('refuses a device and a folder, and leaves them', () => {
+    for (const path of ['/dev/null', folder]) {
+      expect(() => writeWhole(path, 'new')).toThrow(/is a folder or a device/);
+    }
+    expect(statSync('/dev/null').isCharacterDevice()).toBe(true);
+  });
+
+  test('follows a symbolic link, which stays', () => {
+    const [link, file] = [join(folder, 'link.yaml'), join(folder, 'file.yaml')];
+    writeFileSync(file, 'old');
+    symlinkSync(file, link);
+    writeWhole(link, 'new');
+    expect(readFileSync(file, 'utf8')).toBe('new');
+    expect(lstatSync(link).isSymbolicLink()).toBe(true);
   });
 });

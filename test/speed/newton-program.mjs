@@ -8,9 +8,10 @@ import { doublesOf } from './solver-inputs.mjs';
 const SOURCE = fileURLToPath(new URL('newton.c', import.meta.url));
 
 /**
+ * Compiles newton.c with `$CC`, or else `cc`.
  * @param folder Where the binary goes.
  * @param flags For optimisation, as `['-O3']`.
- * @returns The path of the binary, or undefined without a C compiler: `$CC`, or else `cc`.
+ * @returns The path of the binary, or undefined where there is no such compiler.
  */
 export function compileNewton(folder, flags) {
   const binary = join(folder, `newton${flags.join('')}`);
@@ -23,8 +24,9 @@ export function compileNewton(folder, flags) {
 }
 
 /**
- * The program on one set of inputs.
- * @returns What gives the seconds of processor time of so many passes, and the currents computed.
+ * The program ready to compute one set of inputs.
+ * @returns `seconds(passes)`: runs it and gives the processor time of so many passes after a first
+ * one; `currents()`: what it computed last.
  */
 export function newtonProgram(folder, binary, kernel, inputs) {
   const inputFile = join(folder, `${kernel}.inputs`);

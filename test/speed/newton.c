@@ -18,62 +18,66 @@
 #include <string.h>
 #include <time.h>
 
-/* Silent beyond these: 1e-10 of the short-circuit current, which the last step undercuts by far
- * because Newton's method converges quadratically. */
+/* Of the photocurrent: a step so small ends the iteration. Newton's method converges
+ * quadratically, so what the last step leaves is below the rounding of the current. */
 #define TOLERANCE 1e-10
 #define MOST_PASSES 50
-
-/* The five parameters at STC, and how they move with the weather. */
-struct reference {
-    double photocurrent;             /* A */
-    double saturation_current;       /* A */
-    double ideality_voltage;         /* V */
-    double series_resistance;        /* ohm */
-    double shunt_conductance;        /* S */
-    double short_circuit_coefficient; /* A/K */
-    double band_gap;                 /* eV, at the reference temperature */
-    double band_gap_slope;           /* 1/K */
-    double electronvolt;             /* K: 1 eV over Boltzmann's constant */
-};
-
-/* The five parameters at one irradiance and temperature. */
-struct diode {
-    double source;         /* Iph + I0 */
-    double i0;
-    double per_volt;       /* 1 / a */
-    double rs;
-    double gsh;
-    double start;          /* short-circuit current, as near as a start needs */
-    double tolerance;
-};
 
 #define STC_IRRADIANCE 1000.0
 #define STC_TEMPERATURE 298.15
 
+/* The five parameters at STC, and how they move with the weather. */
+struct reference {
+    double photocurrent;              /* A */
+    double saturation_current;        /* A */
+    double ideality_voltage;          /* V */
+    double series_resistance;         /* ohm */
+    double shunt_conductance;         /* S */
+    double short_circuit_coefficient; /* A/K */
+    double band_gap;                  /* eV, at the reference temperature */
+    double band_gap_slope;            /* 1/K */
+    double electronvolt;              /* K: 1 eV over Boltzmann's constant */
+};
+
+/* The five parameters at one irradiance and temperature, with what all points share worked out. */
+struct diode {
+    double source; /* Iph + I0 */
+    double saturation_current;
+    double per_volt; /* 1 / a */
+    double series_resistance;
+    double shunt_conductance;
+    double start; /* Iph: the short-circuit current, as near as a start needs */
+    double tolerance;
+};
+
 static double newton(const struct diode *d, double voltage, double start)
 {
     double current = start;
+
     for (int pass = 0; pass < MOST_PASSES; pass++) {
-        const double junction = voltage + current * d->rs;
-        const double diode = d->i0 * exp(junction * d->per_volt);
-        const double excess = d->source - diode - junction * d->gsh - current;
-        const double slope = -1.0 - d->rs * (diode * d->per_volt + d->gsh);
-        const double step = excess / slope;
-        current -= step;
-        if (fabs(step) < d->tolerance)
+        const double junction = voltage + current * d->series_resistance;
+        const double diode = d->saturation_current * exp(junction * d->per_volt);
+        const double conductance = diode * d->per_volt + d->shunt_conductance;
+        const double excess = d->source - diode - junction * d->shunt_conductance - current;
+        const double step = excess / (1.0 + d->series_resistance * conductance);
+
+        current += step;
+        if (fabs(step) < d->tolerance) {
             break;
+        }
     }
     return current;
 }
 
-static struct diode diode_of(double photocurrent, double i0, double a, double rs, double gsh)
+static struct diode diode_of(double photocurrent, double saturation_current, double ideality_voltage,
+                             double series_resistance, double shunt_conductance)
 {
     const struct diode d = {
-        .source = photocurrent + i0,
-        .i0 = i0,
-        .per_volt = 1.0 / a,
-        .rs = rs,
-        .gsh = gsh,
+        .source = photocurrent + saturation_current,
+        .saturation_current = saturation_current,
+        .per_volt = 1.0 / ideality_voltage,
+        .series_resistance = series_resistance,
+        .shunt_conductance = shunt_conductance,
         .start = photocurrent,
         .tolerance = TOLERANCE * photocurrent,
     };
@@ -112,8 +116,10 @@ static struct diode at_reference(const struct reference *r)
 static void fixed_cold(const struct work *w)
 {
     const struct diode d = at_reference(&w->reference);
-    for (size_t i = 0; i < w->count; i++)
+
+    for (size_t i = 0; i < w->count; i++) {
         w->current[i] = newton(&d, w->voltage[i], d.start);
+    }
 }
 
 /* One curve; each point starts from the one before, which suits a sweep. */
@@ -121,6 +127,7 @@ static void fixed_warm(const struct work *w)
 {
     const struct diode d = at_reference(&w->reference);
     double current = d.start;
+
     for (size_t i = 0; i < w->count; i++) {
         current = newton(&d, w->voltage[i], current);
         w->current[i] = current;
@@ -159,8 +166,9 @@ static double *read_doubles(const char *path, size_t *count)
 {
     FILE *file = fopen(path, "rb");
     double *doubles = NULL;
-    if (file == NULL)
+    if (file == NULL) {
         return NULL;
+    }
     if (fseek(file, 0, SEEK_END) == 0) {
         const long bytes = ftell(file);
         *count = bytes > 0 ? (size_t)bytes / sizeof(double) : 0;
@@ -180,38 +188,46 @@ int main(int argc, char **argv)
     enum { HEADER = sizeof(struct reference) / sizeof(double) + 1 };
     const struct kernel *kernel = NULL;
     size_t doubles = 0;
-    if (argc != 5)
+    if (argc != 5) {
         return fail("expected <kernel> <passes> <inputs> <currents>");
-    for (size_t i = 0; i < sizeof KERNELS / sizeof *KERNELS; i++)
-        if (strcmp(argv[1], KERNELS[i].name) == 0)
+    }
+    for (size_t i = 0; i < sizeof KERNELS / sizeof *KERNELS; i++) {
+        if (strcmp(argv[1], KERNELS[i].name) == 0) {
             kernel = &KERNELS[i];
+        }
+    }
     double *inputs = read_doubles(argv[3], &doubles);
-    if (kernel == NULL || inputs == NULL || doubles < HEADER)
+    if (kernel == NULL || inputs == NULL || doubles < HEADER) {
         return fail("no such kernel, or no inputs");
+    }
 
     struct work work;
     memcpy(&work.reference, inputs, sizeof work.reference);
     work.count = (size_t)inputs[HEADER - 1];
-    if (doubles != HEADER + 3 * work.count)
+    if (doubles != HEADER + 3 * work.count) {
         return fail("the inputs have another length than they say");
+    }
     work.voltage = inputs + HEADER;
     work.irradiance = work.voltage + work.count;
     work.temperature = work.irradiance + work.count;
     work.current = calloc(work.count, sizeof(double));
-    if (work.current == NULL)
+    if (work.current == NULL) {
         return fail("out of memory");
+    }
 
     kernel->run(&work);
     const int passes = atoi(argv[2]);
     const double start = processor_time();
-    for (int pass = 0; pass < passes; pass++)
+    for (int pass = 0; pass < passes; pass++) {
         kernel->run(&work);
+    }
     printf("%.9f\n", processor_time() - start);
 
     FILE *out = fopen(argv[4], "wb");
     if (out == NULL || fwrite(work.current, sizeof(double), work.count, out) != work.count ||
-        fclose(out) != 0)
+        fclose(out) != 0) {
         return fail("cannot write the currents");
+    }
     free(work.current);
     free(inputs);
     return EXIT_SUCCESS;

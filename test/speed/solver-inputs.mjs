@@ -11,7 +11,7 @@ import {
 import { Random } from '../../dist/numeric/random.js';
 import { BOLTZMANN, ELEMENTARY_CHARGE } from '../../dist/quantities.js';
 
-/** Enough for short turns of one pass, few enough for the cache. */
+/** Few enough for the second-level cache, many enough that a pass is worth timing. */
 export const POINTS = 65536;
 /** Points of one sweep: about as many as a curve tracer takes. */
 const SWEEP = 1024;

@@ -65,6 +65,7 @@ describe('a run killed between the two renames', () => {
     const inputs = newFolder();
     const out = join(inputs, 'out');
     emitSuite(writeInputs(inputs), out);
+    writeFileSync(join(out, '.set-aside'), '');
     renameSync(out, join(inputs, '.out.previous'));
     expect(verifySuite(out).problems).toEqual([]);
     expect(existsSync(join(inputs, '.out.previous'))).toBe(false);
@@ -111,6 +112,19 @@ describe('emit', () => {
     writeFileSync(join(out, 'thesis.txt'), 'mine');
     expect(() => emitSuite(writeInputs(inputs), out)).toThrow(/such as thesis\.txt/);
     expect(readdirSync(out)).toEqual(['thesis.txt']);
+  });
+
+  test('refuses a folder without a name, and one around the inputs, and touches neither', () => {
+    const inputs = newFolder();
+    const suite = writeInputs(inputs);
+    for (const out of ['', inputs, join(inputs, '..')]) {
+      expect(() => emitSuite(suite, out), out).toThrow(Fault);
+      expect(readdirSync(inputs).sort()).toEqual(['model.yaml', 'suite.yaml', 'weather.yaml']);
+    }
+  });
+
+  test('refuses the folder in which it runs', () => {
+    expect(() => emitSuite(writeInputs(newFolder()), process.cwd())).toThrow(/replaced whole/);
   });
 
   test('refuses while another process writes the same folder', () => {

@@ -64,7 +64,11 @@ describe('verify', () => {
   test('finds nothing in a suite as emit left it', () => {
     const { problems, checked } = verifySuite(whole);
     expect(problems).toEqual([]);
-    expect(checked.map(({ count }) => count)).toEqual([15, 44, 12]);
+    expect(checked.map(({ held, of }) => [held, of])).toEqual([
+      [15, 15],
+      [44, 44],
+      [12, 12],
+    ]);
   });
 
   test('names the file that is missing, and the file that is too many', () => {
