@@ -12,12 +12,17 @@ export function emitCommand() {
       const { printJson, sayWarnings } = await import('./print.js');
       const { ProgressLine } = await import('./progress.js');
       const line = new ProgressLine();
-      const emission = emitSuite(file, options.out, {
-        progress: (product, done, total) => {
-          line.show(product, done, total);
-        },
-      });
-      line.clear();
+      let emission: Emission;
+      try {
+        emission = emitSuite(file, options.out, {
+          progress: (product, done, total) => {
+            line.show(product, done, total);
+          },
+        });
+      } finally {
+        // A failure must not leave the line running: its timer would keep the program alive.
+        line.clear();
+      }
       sayWarnings(emission.suite.warnings);
       if (options.json === true) printJson(emission.manifest);
       else await printEmission(emission);

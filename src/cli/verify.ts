@@ -11,12 +11,17 @@ export function verifyCommand() {
       const { printJson } = await import('./print.js');
       const { ProgressLine } = await import('./progress.js');
       const line = new ProgressLine();
-      const verification = verifySuite(folder, {
-        progress: (product, done, total) => {
-          line.show(product, done, total);
-        },
-      });
-      line.clear();
+      let verification: Verification;
+      try {
+        verification = verifySuite(folder, {
+          progress: (product, done, total) => {
+            line.show(product, done, total);
+          },
+        });
+      } finally {
+        // A failure must not leave the line running: its timer would keep the program alive.
+        line.clear();
+      }
       if (options.json === true) printJson(verification);
       else await printVerification(verification);
       if (verification.problems.length > 0) process.exitCode = 1;

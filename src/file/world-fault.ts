@@ -20,7 +20,11 @@ export function worldFault(error: unknown, file: string): Fault {
   }
   const inputMistake = INPUT_MISTAKES[error.code];
   if (inputMistake !== undefined) {
-    return new Fault('input', { code: 'FILE_MISSING', file, message: inputMistake });
+    return new Fault(
+      'input',
+      { code: 'FILE_MISSING', file, message: inputMistake },
+      { cause: error },
+    );
   }
   const reason = WORLD_REASONS[error.code] ?? `the system reports ${error.code}.`;
   return new Fault('world', { code: 'DISK', file, message: reason }, { cause: error });
@@ -39,5 +43,6 @@ const WORLD_REASONS: Readonly<Record<string, string>> = {
   EACCES: 'access is not permitted.',
   EPERM: 'access is not permitted.',
   EROFS: 'the disk can only be read.',
+  EBUSY: 'is in use, such as a mount point: choose a folder inside it.',
   EEXIST: 'something of that name is in the way.',
 };

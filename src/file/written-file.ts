@@ -2,7 +2,7 @@
 import { existsSync, realpathSync, renameSync, rmSync, statSync } from 'node:fs';
 import { basename, dirname, join, resolve } from 'node:path';
 import { Fault } from '../fault.js';
-import { StagedFile, type WrittenFile } from './staged-folder.js';
+import { StagedFile, type WrittenFile } from './staged-file.js';
 import { worldFault } from './world-fault.js';
 
 /**
@@ -26,7 +26,10 @@ export function writeWhole(path: string, content: string): WrittenFile {
   } catch (error) {
     file?.close();
     discard(beside);
-    throw worldFault(error instanceof Fault ? error.cause : error, path);
+    throw worldFault(
+      error instanceof Fault && error.cause !== undefined ? error.cause : error,
+      path,
+    );
   }
 }
 

@@ -1,6 +1,7 @@
 import { basename } from 'node:path';
 import { Fault } from '../fault.js';
-import { StagedFolder, type StagedFile } from '../file/staged-folder.js';
+import type { StagedFile } from '../file/staged-file.js';
+import { recoverFolder, StagedFolder } from '../file/staged-folder.js';
 import { refuseForeignFolder } from './suite-folder.js';
 import {
   MANIFEST_NAME,
@@ -37,6 +38,7 @@ export interface Emission {
  */
 export function emitSuite(suiteFile: string, folder: string, options: EmitOptions = {}): Emission {
   const suite = loadSuite(suiteFile);
+  if (folder !== '') recoverFolder(folder);
   refuseForeignFolder(
     folder,
     suite.inputs.map(({ file }) => file),

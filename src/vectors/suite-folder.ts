@@ -1,5 +1,5 @@
-import { existsSync, readdirSync, readFileSync, statSync } from 'node:fs';
-import { join, relative, resolve, sep } from 'node:path';
+import { existsSync, readdirSync, readFileSync, realpathSync, statSync } from 'node:fs';
+import { isAbsolute, join, relative, resolve, sep } from 'node:path';
 import { Fault } from '../fault.js';
 import { worldFault } from '../file/world-fault.js';
 import { listedFiles, MANIFEST_NAME, parseManifest, type Manifest } from './manifest.js';
@@ -53,7 +53,7 @@ export function refuseForeignFolder(folder: string, inputs: readonly string[]): 
     });
   }
   for (const path of [process.cwd(), ...inputs.map((file) => resolve(file))]) {
-    if (path === resolve(folder) || path.startsWith(resolve(folder) + sep)) {
+    if (isInside(path, folder)) {
       throw new Fault('input', {
         code: 'NOT_A_SUITE',
         file: folder,
@@ -81,6 +81,19 @@ export function refuseForeignFolder(folder: string, inputs: readonly string[]): 
     message: `holds what is not of a suite, such as ${foreign[0]!} (${foreign.length} in all).`,
     hint: 'The folder would be replaced whole: choose an empty one, or clear it first.',
   });
+}
+
+function isInside(path: string, folder: string): boolean {
+  const way = relative(real(folder), real(path));
+  return way === '' || !(isAbsolute(way) || way === '..' || way.startsWith(`..${sep}`));
+}
+
+function real(path: string): string {
+  try {
+    return realpathSync(path);
+  } catch {
+    return resolve(path);
+  }
 }
 
 function ownFiles(folder: string): ReadonlySet<string> {

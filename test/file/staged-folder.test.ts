@@ -1,5 +1,12 @@
 import { createHash } from 'node:crypto';
-import { mkdirSync, readdirSync, readFileSync, renameSync, writeFileSync } from 'node:fs';
+import {
+  lstatSync,
+  mkdirSync,
+  readdirSync,
+  readFileSync,
+  symlinkSync,
+  writeFileSync,
+} from 'node:fs';
 import { join } from 'node:path';
 import { describe, expect, test } from 'vitest';
 import { recoverFolder, StagedFolder } from '../../src/file/staged-folder.js';
@@ -12,7 +19,7 @@ describe('a staged folder', () => {
     const parent = newFolder();
     const staged = new StagedFolder(join(parent, 'out'));
     staged.write('a.txt', 'a');
-    expect(filesOf(parent)).toEqual(['.out.partial']);
+    expect(filesOf(parent)).toEqual(['.out.lock', '.out.partial']);
     staged.commit();
     expect(filesOf(parent)).toEqual(['out']);
     expect(filesOf(join(parent, 'out'))).toEqual(['a.txt']);
@@ -61,15 +68,6 @@ describe('a staged folder', () => {
     expect(filesOf(target)).toEqual([]);
   });
 
-  test('clears away what a dead process left', () => {
-    const parent = newFolder();
-    mkdirSync(join(parent, '.out.partial'));
-    // No process has this number: it is above the largest that systems give.
-    writeFileSync(join(parent, '.out.partial', '.owner'), '999999999\n');
-    new StagedFolder(join(parent, 'out')).commit();
-    expect(filesOf(parent)).toEqual(['out']);
-  });
-
   test('cannot be made where a file stands in the way of its parent', () => {
     const parent = newFolder();
     writeFileSync(join(parent, 'file'), '');
@@ -77,41 +75,105 @@ describe('a staged folder', () => {
   });
 });
 
-describe('recovery', () => {
-  test('puts the old folder back when the new one never arrived', () => {
+// Above the largest number that systems give to a process.
+const DEAD = '999999999\n';
+
+/** Every state that a kill can leave, with what the target then holds. */
+const KILLED = {
+  'when it has only taken the lock': { lock: true, target: 'old' },
+  'before the lock has its name': { draft: true, target: 'old' },
+  'while it writes': { lock: true, staging: 'half', target: 'old' },
+  'between the two renames': { lock: true, staging: 'new', previous: 'old' },
+  'before the old folder is removed': { lock: true, target: 'new', previous: 'old' },
+  'before the lock is released': { lock: true, target: 'new' },
+  'while it writes for the first time': { lock: true, staging: 'half' },
+} as const;
+
+interface Left {
+  readonly lock?: boolean;
+  readonly draft?: boolean;
+  readonly target?: string;
+  readonly staging?: string;
+  readonly previous?: string;
+}
+
+function leave(parent: string, { lock, draft, target, staging, previous }: Left): void {
+  const put = (name: string, holds: string | undefined): void => {
+    if (holds === undefined) return;
+    mkdirSync(join(parent, name));
+    writeFileSync(join(parent, name, 'holds.txt'), holds);
+  };
+  put('out', target);
+  put('.out.partial', staging);
+  put('.out.previous', previous);
+  if (lock === true) writeFileSync(join(parent, '.out.lock'), DEAD);
+  if (draft === true) writeFileSync(join(parent, '.out.lock.999999999'), DEAD);
+}
+
+describe.each(Object.entries(KILLED))('a run killed %s', (_, left: Left) => {
+  const expected = left.target ?? left.previous;
+
+  test('leaves what a reader mends to one whole folder, or none', () => {
     const parent = newFolder();
-    mkdirSync(join(parent, '.out.previous'));
-    writeFileSync(join(parent, '.out.previous', '.set-aside'), '');
+    leave(parent, left);
     recoverFolder(join(parent, 'out'));
-    expect(filesOf(parent)).toEqual(['out']);
-    expect(filesOf(join(parent, 'out'))).toEqual([]);
+    const present = filesOf(parent).filter((name) => !name.startsWith('.out.lock.'));
+    expect(present).toEqual(expected === undefined ? [] : ['out']);
+    if (expected !== undefined) {
+      expect(readFileSync(join(parent, 'out', 'holds.txt'), 'utf8')).toBe(expected);
+    }
   });
 
-  test('takes the mark off a folder that was never set aside', () => {
-    const out = newFolder();
-    writeFileSync(join(out, '.set-aside'), '');
-    recoverFolder(out);
-    expect(filesOf(out)).toEqual([]);
+  test('does not stand in the way of the next', () => {
+    const parent = newFolder();
+    leave(parent, left);
+    const staged = new StagedFolder(join(parent, 'out'));
+    staged.write('holds.txt', 'newest');
+    staged.commit();
+    expect(filesOf(parent).filter((name) => !name.startsWith('.out.lock.'))).toEqual(['out']);
+    expect(readFileSync(join(parent, 'out', 'holds.txt'), 'utf8')).toBe('newest');
+  });
+});
+
+describe('a folder that another process is writing', () => {
+  // Process 1 is always alive, and not ours to signal.
+  const held = (): string => {
+    const parent = newFolder();
+    leave(parent, { target: 'old', staging: 'half' });
+    writeFileSync(join(parent, '.out.lock'), '1\n');
+    return parent;
+  };
+
+  test('is refused to a second writer', () => {
+    expect(() => new StagedFolder(join(held(), 'out'))).toThrow(/process 1 is writing here/);
   });
 
-  test('leaves folders alone that only have the names', () => {
-    const parent = newFolder();
-    mkdirSync(join(parent, '.out.previous'));
-    mkdirSync(join(parent, '.out.partial'));
-    writeFileSync(join(parent, '.out.partial', 'data.txt'), 'mine');
+  test('is left as it is by a reader', () => {
+    const parent = held();
     recoverFolder(join(parent, 'out'));
-    expect(() => new StagedFolder(join(parent, 'out'))).toThrow(/is in the way/);
+    expect(filesOf(parent)).toEqual(['.out.lock', '.out.partial', 'out']);
+  });
+});
+
+describe('folders that only have the names', () => {
+  test('are left alone, and writing is refused', () => {
+    const parent = newFolder();
+    leave(parent, { staging: 'mine', previous: 'mine too' });
+    recoverFolder(join(parent, 'out'));
+    expect(() => new StagedFolder(join(parent, 'out'))).toThrow(/bears a name that is needed/);
     expect(filesOf(parent)).toEqual(['.out.partial', '.out.previous']);
-    expect(filesOf(join(parent, '.out.partial'))).toEqual(['data.txt']);
   });
+});
 
-  test('drops the old folder when the new one is in place', () => {
+describe('a target that is a symbolic link', () => {
+  test('stays one: the folder it leads to is replaced', () => {
     const parent = newFolder();
-    mkdirSync(join(parent, 'out'));
-    writeFileSync(join(parent, 'out', '.set-aside'), '');
-    renameSync(join(parent, 'out'), join(parent, '.out.previous'));
-    mkdirSync(join(parent, 'out'));
-    recoverFolder(join(parent, 'out'));
-    expect(filesOf(parent)).toEqual(['out']);
+    mkdirSync(join(parent, 'real'));
+    symlinkSync(join(parent, 'real'), join(parent, 'out'));
+    const staged = new StagedFolder(join(parent, 'out'));
+    staged.write('a.txt', 'a');
+    staged.commit();
+    expect(lstatSync(join(parent, 'out')).isSymbolicLink()).toBe(true);
+    expect(filesOf(join(parent, 'real'))).toEqual(['a.txt']);
   });
 });
