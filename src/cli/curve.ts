@@ -33,8 +33,8 @@ export function curveCommand() {
           cell_temperature_C: options.temperature,
           isc_A: curve.shortCircuitCurrent,
           voc_V: curve.openCircuitVoltage,
-          peaks: curve.peaks(),
-          points,
+          peaks: curve.peaks().map(inFileUnits),
+          points: points.map(inFileUnits),
         });
       } else {
         printLine(`${module.name} at ${options.irradiance} W/m², ${options.temperature} °C`);
@@ -42,6 +42,12 @@ export function curveCommand() {
       }
     });
 }
+
+const inFileUnits = ({ voltage, current, power }: Points[number]) => ({
+  voltage_V: voltage,
+  current_A: current,
+  power_W: power,
+});
 
 type Points = readonly {
   readonly voltage: number;

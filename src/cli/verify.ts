@@ -28,15 +28,23 @@ export function verifyCommand() {
     });
 }
 
-export async function printVerification({ suite, checked, problems }: Verification): Promise<void> {
+export async function printVerification({
+  suite,
+  checked,
+  problems,
+  remark,
+}: Verification): Promise<void> {
   const { colours, counted, printLine, reportProblems } = await import('./print.js');
   for (const { what, held, of } of checked) {
     printLine(`  ${held === of ? '' : `${held} of `}${of} ${what}`);
   }
+  if (remark !== undefined) printLine(`  ${remark}`);
   reportProblems(problems);
   printLine(
     problems.length === 0
-      ? `${colours.green('whole')}: ${suite} holds what its inputs give`
+      ? remark === undefined
+        ? `${colours.green('whole')}: ${suite} holds what its inputs give`
+        : `${colours.yellow('whole as far as it could be checked')}: ${suite}`
       : `${colours.red('damaged')}: ${counted(problems.length, 'problem')} in ${suite}`,
   );
 }

@@ -1,4 +1,3 @@
-import { Fault } from '../fault.js';
 import { crc32 } from '../numeric/crc32.js';
 import {
   COLUMN_NAME_SIZE,
@@ -9,7 +8,6 @@ import {
   HEADER_CRC_OFFSET,
   HEADER_SIZE,
   KIND_IDS,
-  LARGEST_FILE,
   MAGIC,
   OVERFLOW_IDS,
   ROUNDING_IDS,
@@ -23,7 +21,7 @@ export type ByteWriter = (chunk: Uint8Array) => void;
 
 /**
  * Writes a vector file in one pass and constant memory, as `vectors/FORMAT.md` describes it.
- * @throws Fault `FILE_TOO_LARGE` before anything is written if it would pass 4 GiB.
+ * The product must be one that `refuseUnfit` lets pass.
  */
 export function binarySink(product: Product, write: ByteWriter): Sink {
   const head = headBytes(product);
@@ -112,13 +110,6 @@ function headBytes(product: Product): Uint8Array {
     section.columns.map((column) => ({ section, column })),
   );
   const { extents: places, length } = extents(columns.length, product.sections);
-  if (length > LARGEST_FILE) {
-    throw new Fault('input', {
-      code: 'FILE_TOO_LARGE',
-      message: `${product.name} would take ${length} bytes; a vector file holds 4 GiB.`,
-      hint: 'Lengthen the sampling period, or split the weather.',
-    });
-  }
   const head = new Uint8Array(places[1]!.offset);
   const view = new DataView(head.buffer);
   head.set(MAGIC);

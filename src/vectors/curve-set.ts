@@ -2,7 +2,7 @@ import { Fault } from '../fault.js';
 import type { Quantizer } from '../fixed/quantizer.js';
 import { toCelsius, type Conditions } from '../quantities.js';
 import { globalPeak, type Curve, type Peak, type Source } from '../source/curve.js';
-import { placeVoltageCodes } from './point-placement.js';
+import { VoltageGrid } from './voltage-grid.js';
 import {
   conditionColumns,
   INDEX_FORMAT,
@@ -55,7 +55,7 @@ interface CurveTable {
   readonly conditions: Conditions;
   readonly curve: Curve;
   readonly peaks: readonly Peak[];
-  readonly voltageCodes: Float64Array;
+  readonly grid: VoltageGrid;
 }
 
 function tabulate(
@@ -66,10 +66,11 @@ function tabulate(
 ): CurveTable {
   const curve = source.at(conditions);
   const peaks = curve.peaks();
-  const voltageCodes = atConditions(conditions, () =>
-    placeVoltageCodes(curve.openCircuitVoltage, points, voltage, peaks),
+  const grid = atConditions(
+    conditions,
+    () => new VoltageGrid(curve.openCircuitVoltage, points, voltage, peaks),
   );
-  return { conditions, curve, peaks, voltageCodes };
+  return { conditions, curve, peaks, grid };
 }
 
 function curveSection(tables: readonly CurveTable[], points: number, layout: Layout): Section {
@@ -93,8 +94,8 @@ function pointSection(tables: readonly CurveTable[], points: number, layout: Lay
     ...layout,
     count: tables.length * points,
     values: (index, into) => {
-      const { curve, voltageCodes } = tables[Math.floor(index / points)]!;
-      const volts = voltage.decode(voltageCodes[index % points]!);
+      const { curve, grid } = tables[Math.floor(index / points)]!;
+      const volts = voltage.decode(grid.code(index % points));
       into[0] = volts;
       // Rounding may leave the last current a hair below zero.
       into[1] = Math.max(curve.current(volts), 0);
@@ -147,8 +148,15 @@ function curveValues(
   ];
 }
 
-const runningTotals = (counts: readonly number[]): number[] =>
-  counts.map((_, index) => counts.slice(0, index).reduce((sum, count) => sum + count, 0));
+/** For each entry, the sum of those before it. */
+function runningTotals(counts: readonly number[]): number[] {
+  let total = 0;
+  return counts.map((count) => {
+    const before = total;
+    total += count;
+    return before;
+  });
+}
 
 // A Fault from deep inside does not know which curve it was about.
 function atConditions<T>(conditions: Conditions, build: () => T): T {

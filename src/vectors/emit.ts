@@ -4,6 +4,7 @@ import type { StagedFile } from '../file/staged-file.js';
 import { recoverFolder, StagedFolder } from '../file/staged-folder.js';
 import { refuseForeignFolder } from './suite-folder.js';
 import {
+  listProduct,
   MANIFEST_NAME,
   manifestText,
   newManifest,
@@ -12,7 +13,6 @@ import {
   type Manifest,
 } from './manifest.js';
 import { refuseUnfit, sinksFor } from './outputs.js';
-import type { Product } from './product.js';
 import { pour } from './sink.js';
 import type { OutputForm } from './suite-definition.js';
 import { loadSuite, type PlannedProduct, type Suite, type SuiteInput } from './suite.js';
@@ -92,22 +92,10 @@ function writeProduct(
     });
     pour(product, sinks, (done, total) => progress?.(product.name, done, total));
     const files = open.map(({ file, form }) => ({ ...file.end(), form }));
-    return listing(product, planned.source, files);
+    return listProduct(product, planned.source, files);
   } finally {
     for (const { file } of open) file.close();
   }
-}
-
-function listing(product: Product, source: string, files: ListedProduct['files']): ListedProduct {
-  const { name, kind, sections } = product;
-  const saturated = sections.flatMap((section) =>
-    section.columns.flatMap(({ name: column, quantizer }) => {
-      const { saturatedLow: low, saturatedHigh: high } = quantizer;
-      return low + high === 0 ? [] : [{ column: `${section.noun}.${column}`, low, high }];
-    }),
-  );
-  const counts = sections.map(({ tag, count }) => ({ tag, records: count }));
-  return { name, kind, source, sections: counts, saturated, files };
 }
 
 /** Faults without a place are about what the suite file asked for. */

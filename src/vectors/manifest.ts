@@ -5,6 +5,8 @@
 import { createHash } from 'node:crypto';
 import { Fault } from '../fault.js';
 import { VERSION } from '../version.js';
+import { manifestDefinition } from './manifest-definition.js';
+import type { Product } from './product.js';
 import type { OutputForm } from './suite-definition.js';
 
 export const MANIFEST_NAME = 'manifest.json';
@@ -55,6 +57,23 @@ export function newManifest(
   return { manifest: MANIFEST_VERSION, suite, tool, seeds: {}, inputs, products };
 }
 
+/** How a product that has been poured is listed, with what its formats could not hold. */
+export function listProduct(
+  product: Product,
+  source: string,
+  files: ListedProduct['files'],
+): ListedProduct {
+  const { name, kind, sections } = product;
+  const saturated = sections.flatMap((section) =>
+    section.columns.flatMap(({ name: column, quantizer }) => {
+      const { saturatedLow: low, saturatedHigh: high } = quantizer;
+      return low + high === 0 ? [] : [{ column: `${section.noun}.${column}`, low, high }];
+    }),
+  );
+  const counts = sections.map(({ tag, count }) => ({ tag, records: count }));
+  return { name, kind, source, sections: counts, saturated, files };
+}
+
 /**
  * The text of a manifest. Its last key, `seal`, is the SHA-256 of the text with 64 zeros in the
  * seal's place, so that the manifest vouches for itself as it does for the other files.
@@ -81,15 +100,26 @@ export function parseManifest(text: string, file: string): Manifest {
   if (sealOf(withSeal(text, OPEN_SEAL)) !== seal) {
     return refuse('has been changed since it was written: the seal does not match.');
   }
-  const { manifest: version, tool } = JSON.parse(text) as Manifest;
-  if (version !== MANIFEST_VERSION) {
+  const parsed = manifestDefinition.safeParse(fromJson(text));
+  if (!parsed.success) return refuse('is sealed, but is not what emit writes.');
+  const { seal: own, ...manifest } = parsed.data;
+  if (own !== seal || manifest.manifest !== MANIFEST_VERSION) {
     return refuse(
-      `has version ${version}, expected ${MANIFEST_VERSION}.`,
-      `It was written by ${tool.name} ${tool.version}.`,
+      `has version ${manifest.manifest}, expected ${MANIFEST_VERSION}.`,
+      `It was written by ${manifest.tool.name} ${manifest.tool.version}.`,
     );
   }
-  // Sealed text of this version is text that manifestText wrote, so its shape is known.
-  return JSON.parse(text) as Manifest;
+  const paths = listedFiles(manifest).map(({ path }) => path);
+  if (new Set(paths).size < paths.length) return refuse('lists a file twice.');
+  return manifest;
+}
+
+function fromJson(text: string): unknown {
+  try {
+    return JSON.parse(text) as unknown;
+  } catch {
+    return undefined;
+  }
 }
 
 /** Every file of the suite except the manifest. */

@@ -6,20 +6,20 @@ import type { CodeFormat } from '../fixed/code-format.js';
  * decimal expansion of the double, rounded, which the language defines to the last place.
  */
 export function physicalText(format: CodeFormat): (code: number) => string {
-  const places = decimalPlaces(format.step);
   const { origin, step } = format;
+  const places = Number.isInteger(step) && Number.isInteger(origin) ? 0 : decimalPlaces(step);
   return (code) => {
     const text = (origin + code * step).toFixed(places);
     return places === 0 ? text : trimZeros(text);
   };
 }
 
-// Smallest number of places of which one unit is at most a thousandth of a step, up to 15.
+// Smallest number of places of which one unit is at most a thousandth of a step. Steps go down to
+// 1e-30, and the language writes up to 100 places.
 function decimalPlaces(step: number): number {
-  if (Number.isInteger(step)) return 0;
   let places = 0;
-  for (let unit = 1; unit > step / 1000 && places < 15; unit /= 10) places++;
-  return places;
+  for (let unit = 1; unit > step / 1000; unit /= 10) places++;
+  return Math.max(places, 3);
 }
 
 function trimZeros(text: string): string {

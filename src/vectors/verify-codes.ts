@@ -6,18 +6,24 @@ import type { Column, Product, Section } from './product.js';
 /** Tells of a record at fault. */
 export type Complain = (section: string, record: number | undefined, message: string) => void;
 
+/** How many codes were compared with the model, and how many of them are wrong. */
+export interface Comparison {
+  readonly compared: number;
+  readonly wrong: number;
+}
+
 /**
  * Holds every code of a vector file against the model: within half a step of the model's value
  * (one step for directed rounding), or at the end of the range for what lies beyond it.
- * @returns How many codes were compared.
  */
 export function compareWithModel(
   file: VectorFile,
   product: Product,
   complain: Complain,
   progress?: (done: number, total: number) => void,
-): number {
+): Comparison {
   let compared = 0;
+  let wrong = 0;
   const total = product.sections.reduce((sum, { count }) => sum + count, 0);
   for (const section of product.sections) {
     const read = file.sections.find(({ tag }) => tag === section.tag);
@@ -38,13 +44,15 @@ export function compareWithModel(
         const column = section.columns[index]!;
         const code = read.code(columns[index]!, record);
         const complaint = codeComplaint(column, code, values[index]!);
-        if (complaint !== undefined) complain(section.tag, record, complaint);
         compared++;
+        if (complaint === undefined) continue;
+        wrong++;
+        complain(section.tag, record, complaint);
       }
       if (record % RECORDS_PER_REPORT === 0) progress?.(record, total);
     }
   }
-  return compared;
+  return { compared, wrong };
 }
 
 const RECORDS_PER_REPORT = 16_384;

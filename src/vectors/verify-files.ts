@@ -1,7 +1,8 @@
 import { createHash } from 'node:crypto';
-import { closeSync, existsSync, openSync, readSync } from 'node:fs';
+import { closeSync, existsSync, lstatSync, openSync, readSync } from 'node:fs';
 import { join } from 'node:path';
 import type { Problem } from '../fault.js';
+import { worldFault } from '../file/world-fault.js';
 import { listedFiles, MANIFEST_NAME, type Manifest } from './manifest.js';
 import { filesBelow } from './suite-folder.js';
 
@@ -13,7 +14,7 @@ export function fileProblems(folder: string, manifest: Manifest): Problem[] {
     if (!existsSync(file)) return [{ code: 'FILE_ABSENT', file, message: 'is listed but absent.' }];
     const found = digest(file);
     if (found === undefined) {
-      return [{ code: 'FILE_CHANGED', file, message: 'cannot be read as a file.' }];
+      return [{ code: 'FILE_CHANGED', file, message: 'is not a plain file.' }];
     }
     if (found.bytes !== bytes) {
       const message = `must have ${bytes} bytes, found ${found.bytes}.`;
@@ -34,6 +35,8 @@ export function fileProblems(folder: string, manifest: Manifest): Problem[] {
 }
 
 function digest(file: string): { readonly bytes: number; readonly sha256: string } | undefined {
+  // Neither a folder nor a pipe, which would wait for ever.
+  if (!lstatSync(file).isFile()) return undefined;
   const hash = createHash('sha256');
   const piece = Buffer.alloc(PIECE);
   let bytes = 0;
@@ -47,8 +50,8 @@ function digest(file: string): { readonly bytes: number; readonly sha256: string
     } finally {
       closeSync(descriptor);
     }
-  } catch {
-    return undefined;
+  } catch (error) {
+    throw worldFault(error, file);
   }
   return { bytes, sha256: hash.digest('hex') };
 }

@@ -90,7 +90,7 @@ describe('fit', () => {
     expect([status, stderr]).toEqual([0, `Model written to ${model}.\n`]);
     const peak = (source: string): number => {
       const { stdout } = run(['curve', source, '--irradiance', '800', '--json']);
-      return (JSON.parse(stdout) as { peaks: { power: number }[] }).peaks[0]!.power;
+      return (JSON.parse(stdout) as { peaks: { power_W: number }[] }).peaks[0]!.power_W;
     };
     expect(peak(model)).toBeCloseTo(peak(module), 9);
   });
@@ -129,7 +129,7 @@ describe('curve', () => {
 
   test('shows a source in the dark as zeros', () => {
     const { stdout } = run(['curve', module, '--irradiance', '0', '--json']);
-    expect(JSON.parse(stdout)).toMatchObject({ isc_A: 0, voc_V: 0, peaks: [{ power: 0 }] });
+    expect(JSON.parse(stdout)).toMatchObject({ isc_A: 0, voc_V: 0, peaks: [{ power_W: 0 }] });
   });
 });
 

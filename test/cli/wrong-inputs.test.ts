@@ -47,7 +47,7 @@ describe('a datasheet', () => {
 
   test('with a percentage written as millivolts is refused as a slip of the unit', () => {
     const { stderr } = fitWith('beta_voc_pct_per_K: -0.36', 'beta_voc_mV_per_K: -0.36');
-    expect(stderr).toContain('for %/K write beta_voc_pct_per_K');
+    expect(stderr).toContain('It looks like %/K (then write beta_voc_pct_per_K)');
   });
 
   test('with broken YAML is refused at the place', () => {
@@ -115,12 +115,57 @@ describe('a suite', () => {
     expect(stderr).toContain('suite.yaml:7:11: timeline: needs a weather file');
   });
 
-  test('whose C array would pass what C99 promises is refused before anything is written', () => {
+  test('whose C array would pass what C99 promises is refused where C is asked for', () => {
     const { status, stderr } = emit({
-      suite: SMALL_SUITE.replace('every_s: 1', 'every_s: 0.0001'),
+      suite: SMALL_SUITE.replace('every_s: 1', 'every_s: 0.001, outputs: [c]'),
+      weather: 'name: Long\nblocks: [{ hold: { for_s: 20 } }]\n',
     });
     expect(status).toBe(2);
-    expect(stderr).toContain('C_OBJECT_TOO_LARGE suite.yaml: the samples of small-one-timeline');
+    expect(stderr).toContain('C_OBJECT_TOO_LARGE suite.yaml:8:1: timeline: the 20001 samples');
+    expect(stderr).toContain('which is 3276 samples.');
+  });
+
+  test('is written without C where C could not hold it and nobody asked for C, with a warning', () => {
+    const { status, stderr, stdout } = emit({
+      suite: SMALL_SUITE.replace('every_s: 1', 'every_s: 0.001'),
+      weather: 'name: Long\nblocks: [{ hold: { for_s: 20 } }]\n',
+    });
+    expect(status).toBe(0);
+    expect(stderr).toContain('warning suite.yaml:8:1: timeline: is written without C sources');
+    expect(stdout).toContain('small-one-timeline.hpv');
+    expect(stdout).not.toContain('small-one-timeline.c ');
+  });
+
+  test('sampled faster than its time format counts is refused, with a format that would do', () => {
+    const { status, stderr } = emit({
+      suite: SMALL_SUITE.replace('every_s: 1', 'every_s: 0.0004'),
+    });
+    expect(status).toBe(2);
+    expect(stderr).toContain('suite.yaml:8:22: timeline.every_s: is shorter than a step');
+    expect(stderr).toContain('{ step: 0.0004, bits: 32 }');
+  });
+
+  test('longer than its time format counts is refused before anything is written', () => {
+    const { status, stderr } = emit({
+      suite: SMALL_SUITE.replace('every_s: 1', 'every_s: 3600'),
+      weather: 'name: Long\nblocks: [{ hold: { for_s: 5000000 } }]\n',
+    });
+    expect(status).toBe(2);
+    expect(stderr).toContain('suite.yaml:8:1: timeline: the last time is 4996800 s');
+  });
+
+  test('given in the place of a datasheet is named for what it is', () => {
+    const folder = newFolder();
+    writeInputs(folder);
+    expect(run(['fit', 'suite.yaml'], folder).stderr).toBe(
+      'error OTHER_KIND suite.yaml: is a suite file; expected a datasheet file.\n',
+    );
+  });
+
+  test('with a label that no name in C can hold is refused at the label', () => {
+    const { stderr } = emit({ suite: SMALL_SUITE.replace('{ one:', '{ One:') });
+    expect(stderr).toMatch(/^error INVALID_KEY suite\.yaml:2:12: sources\.One: /);
+    expect(stderr).toContain('it must have lower-case letters, digits and hyphens, a letter first');
   });
 
   test('whose format refuses a value names format and value', () => {
@@ -128,6 +173,8 @@ describe('a suite', () => {
       suite: SMALL_SUITE.replace('UQ6.6', '{ q: UQ4.8, overflow: refuse }'),
     });
     expect(status).toBe(2);
-    expect(stderr).toMatch(/VALUE_OUT_OF_RANGE suite\.yaml: .*UQ4\.8 holds 0 to 15\.99/);
+    expect(stderr).toMatch(
+      /VALUE_OUT_OF_RANGE suite\.yaml:5:1: curves: curve 0, voc: .*UQ4\.8 holds 0 to 15\.99/,
+    );
   });
 });

@@ -111,7 +111,7 @@ describe('parseInput', () => {
     ]);
     for (const { file, message } of problems) {
       expect(file).toBe('bad.yaml');
-      expect(message).toMatch(/^[A-Z].*\.$/);
+      expect(message).toMatch(/\.$/);
       expect(message).not.toContain('\n');
     }
   });

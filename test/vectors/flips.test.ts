@@ -38,8 +38,8 @@ test('a change of one bit is found in every byte of every file of a suite', () =
       writeFileSync(file, bytes);
       const problems = problemsOf(folder);
       bytes[at]! ^= bit;
-      if (problems[0]?.file?.startsWith(folder) !== true) {
-        expect.fail(`${path}: bit ${at & 7} of byte ${at} was changed and verify named no file`);
+      if (problems[0]?.file !== file) {
+        expect.fail(`${path}: bit ${at & 7} of byte ${at} was changed and verify did not name it`);
       }
       flips++;
     }
@@ -47,4 +47,4 @@ test('a change of one bit is found in every byte of every file of a suite', () =
   }
   expect(problemsOf(folder)).toEqual([]);
   console.log(`${flips} single-bit changes, one in every byte of ${paths.length} files, all found`);
-}, 240_000);
+}, 600_000);

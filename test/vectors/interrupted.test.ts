@@ -18,26 +18,21 @@ irradiance_W_per_m2: 500
 blocks: [{ repeat: { times: 1000000, blocks: [{ hold: { for_s: 50 } }] } }]
 `;
 const LONG_SUITE = SMALL_SUITE.replace(
-  'timeline: { every_s: 1 }',
-  'timeline: { every_s: 1 }\noutputs: [binary]',
-);
+  'power: UQ8.8',
+  'power: UQ8.8, time: { step: 1, bits: 32 }',
+).replace('timeline: { every_s: 1 }', 'timeline: { every_s: 1 }\noutputs: [binary]');
 
 const partialBeside = (folder: string): string => join(folder, '.out.partial');
 
 async function killMidWrite(inputs: string): Promise<void> {
   const suite = writeInputs(inputs, { suite: LONG_SUITE, weather: LONG_WEATHER });
   const child = spawn(process.execPath, [program, 'emit', suite, '--out', join(inputs, 'out')]);
-  let over = false;
-  const ended = new Promise<void>((resolve) =>
-    child.once('exit', () => {
-      over = true;
-      resolve();
-    }),
-  );
+  const ended = new Promise((resolve) => child.once('exit', resolve));
   const growing = join(partialBeside(inputs), 'small-one-timeline.hpv');
   const hasGrown = (): boolean => existsSync(growing) && statSync(growing).size > 1_000_000;
-  while (!over && !hasGrown()) await new Promise((resolve) => setTimeout(resolve, 20));
-  expect(over, 'the run ended before it could be killed').toBe(false);
+  while (child.exitCode === null && !hasGrown())
+    await new Promise((resolve) => setTimeout(resolve, 20));
+  expect(child.exitCode, 'the run ended before it could be killed').toBe(null);
   child.kill('SIGKILL');
   await ended;
 }

@@ -63,11 +63,15 @@ describe('CSV', () => {
   test('shows physical values from which the code can be told', () => {
     fc.assert(
       fc.property(
-        fc.constantFrom(0.001, 2 ** -8, 2 ** -15, 0.0088623046875, 1, 0.1, 12.5),
+        fc.constantFrom(0.001, 2 ** -8, 2 ** -15, 0.0088623046875, 1, 0.1, 12.5, 1e-20, 1e-30),
+        fc.constantFrom(0, 0.25, -40),
         fc.integer({ min: -32768, max: 32767 }),
-        (step, code) => {
-          const format = { ...qCodes(parseQ('Q15')), step, label: 'any' };
-          expect(Math.round(Number(physicalText(format)(code)) / step)).toBe(code);
+        (step, steps, code) => {
+          const origin = steps * step;
+          const format = { ...qCodes(parseQ('Q15')), step, origin, label: 'any' };
+          const value = Number(physicalText(format)(code));
+          expect(Math.round((value - origin) / step)).toBe(code);
+          expect(Math.abs(value - (origin + code * step))).toBeLessThanOrEqual(step / 1000);
         },
       ),
       { seed: 3, numRuns: 1000 },

@@ -1,4 +1,4 @@
-import { cpSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
+import { cpSync, mkdirSync, readFileSync, rmSync, writeFileSync } from 'node:fs';
 import { createHash } from 'node:crypto';
 import { join } from 'node:path';
 import { beforeAll, describe, expect, test } from 'vitest';
@@ -6,7 +6,7 @@ import type { Problem } from '../../src/fault.js';
 import { Fault } from '../../src/fault.js';
 import { crc32 } from '../../src/numeric/crc32.js';
 import { emitSuite } from '../../src/vectors/emit.js';
-import { manifestText } from '../../src/vectors/manifest.js';
+import { manifestText, type Manifest } from '../../src/vectors/manifest.js';
 import { readManifest } from '../../src/vectors/suite-folder.js';
 import { verifySuite } from '../../src/vectors/verify.js';
 import { newFolder } from '../new-folder.js';
@@ -148,6 +148,107 @@ describe('verify', () => {
       bytes.write('6', bytes.indexOf('photocurrent_A: 5') + 16);
     });
     expect(problemsOf(copy).filter(({ code }) => code === 'NOT_REPRODUCED')).toHaveLength(10);
+  });
+
+  describe('is not taken in by a manifest that is sealed but', () => {
+    /** Writes a manifest changed by `change`, with a seal that fits. */
+    function reseal(change: (manifest: Manifest) => unknown): string {
+      const copy = copyOf(whole);
+      const text = manifestText(change(readManifest(copy)) as Manifest);
+      writeFileSync(join(copy, 'manifest.json'), text);
+      return copy;
+    }
+    const codesOf = (folder: string): string[] => problemsOf(folder).map(({ code }) => code);
+
+    test('no longer lists a file that is gone', () => {
+      const copy = reseal((manifest) => ({
+        ...manifest,
+        products: manifest.products.map((product) => ({
+          ...product,
+          files: product.files.filter(({ path }) => path !== 'small-one-curves.hpv'),
+        })),
+      }));
+      rmSync(join(copy, 'small-one-curves.hpv'));
+      expect(codesOf(copy)).toEqual(['MANIFEST_DIFFERS']);
+    });
+
+    test.each([
+      ['names another suite', (manifest: Manifest) => ({ ...manifest, suite: 'other' })],
+      ['names a seed', (manifest: Manifest) => ({ ...manifest, seeds: { noise: 4 } })],
+      [
+        'counts values that saturated',
+        (manifest: Manifest) => ({
+          ...manifest,
+          products: manifest.products.map((product) => ({
+            ...product,
+            saturated: [{ column: 'curve.voc', low: 1, high: 0 }],
+          })),
+        }),
+      ],
+    ])('%s', (_, change) => {
+      expect(codesOf(reseal(change))).toEqual(['MANIFEST_DIFFERS']);
+    });
+
+    test('lists no suite file among its inputs', () => {
+      const copy = reseal((manifest) => ({
+        ...manifest,
+        inputs: manifest.inputs.map((input) => ({ ...input, named_as: input.named_as ?? 'x' })),
+      }));
+      expect(codesOf(copy)).toContain('INPUTS_DIFFER');
+    });
+
+    test('lists fewer products than the suite file asks for', () => {
+      const copy = reseal((manifest) => ({ ...manifest, products: [] }));
+      expect(codesOf(copy)).toContain('INPUTS_DIFFER');
+    });
+
+    test.each([
+      ['has another shape', (manifest: Manifest) => ({ ...manifest, products: 5 })],
+      ['lacks a key', (manifest: Manifest) => ({ ...manifest, inputs: undefined })],
+      [
+        'leads out of the folder',
+        (manifest: Manifest) => ({
+          ...manifest,
+          inputs: manifest.inputs.map((input) => ({ ...input, path: '../../etc/passwd' })),
+        }),
+      ],
+      [
+        'lists a file twice',
+        (manifest: Manifest) => ({ ...manifest, inputs: [...manifest.inputs, ...manifest.inputs] }),
+      ],
+    ])('%s', (_, change) => {
+      expect(codesOf(reseal(change))).toEqual(['MANIFEST']);
+    });
+
+    test('was written by another version: says what was not checked', () => {
+      const copy = reseal((manifest) => ({
+        ...manifest,
+        tool: { ...manifest.tool, version: '0.0.1' },
+      }));
+      const { remark, problems, checked } = verifySuite(copy);
+      expect(problems).toEqual([]);
+      expect(remark).toMatch(/^Written by version 0\.0\.1, read by /);
+      expect(checked.map(({ what }) => what)).not.toContain('output files rebuilt byte for byte');
+    });
+  });
+
+  test('counts the codes that are wrong, however few of them it shows', () => {
+    const copy = copyOf(whole);
+    forge(copy, 'small-one-curves.hpv', (bytes) => {
+      for (let point = 0; point < 4; point++) bend(bytes, 'POIN', point * 4 + 2, 2);
+    });
+    expect(verifySuite(copy).checked[1]).toEqual({
+      what: 'codes against the model',
+      held: 40,
+      of: 44,
+    });
+  });
+
+  test('finds a folder in the place of a file', () => {
+    const copy = copyOf(whole);
+    rmSync(join(copy, 'small-one-curves.hpv'));
+    mkdirSync(join(copy, 'small-one-curves.hpv'));
+    expect(problemsOf(copy)[0]).toMatchObject({ message: 'is not a plain file.' });
   });
 
   test('refuses a folder that holds no suite', () => {
