@@ -3,10 +3,17 @@
  * Node takes its time over every module it loads, and help would need twenty. What a command
  * imports when it runs stays in files of its own, which the library shares.
  */
+import { readFileSync } from 'node:fs';
+import { createRequire } from 'node:module';
+import { dirname, join } from 'node:path';
 import { fileURLToPath } from 'node:url';
 import { build } from 'esbuild';
 
 const PROGRAM = fileURLToPath(new URL('../../dist/cli/main.js', import.meta.url));
+
+// What is packed in goes with its licence.
+const commander = dirname(createRequire(import.meta.url).resolve('commander'));
+const licence = readFileSync(join(commander, 'LICENSE'), 'utf8').replaceAll('*/', '* /');
 
 const dynamicImportsStayOutside = {
   name: 'dynamic-imports-stay-outside',
@@ -29,5 +36,6 @@ await build({
   banner: {
     js: "import { createRequire } from 'node:module';\nconst require = createRequire(import.meta.url);",
   },
+  footer: { js: `/* commander\n${licence}*/` },
   plugins: [dynamicImportsStayOutside],
 });
