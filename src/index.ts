@@ -90,7 +90,11 @@ export { codeCurve, currentCodeAt, interpolateCode, type CodeCurve } from './tab
 // Vectors: build, write, read, verify.
 export { curveSet, type CurveSetPlan } from './vectors/curve-set.js';
 export { timeline, type TimelinePlan } from './vectors/timeline.js';
-export type { Product, ProductFormats, Section } from './vectors/product.js';
+export { writeProduct, type ProductFile } from './vectors/write-product.js';
+export type { OutputForm } from './vectors/suite-definition.js';
+export type { Suite } from './vectors/suite.js';
+export type { CodedQuantity } from './fixed/coded-quantity.js';
+export type { Column, Product, ProductFormats, Section } from './vectors/product.js';
 export { emitSuite, type Emission, type EmitOptions } from './vectors/emit.js';
 export { verifySuite, type Verification, type VerifyOptions } from './vectors/verify.js';
 export { readVectorFile, type VectorFile, type ReadSection } from './vectors/binary-reader.js';

@@ -1,6 +1,5 @@
 import { basename } from 'node:path';
 import { Fault } from '../fault.js';
-import type { StagedFile } from '../file/staged-file.js';
 import { recoverFolder, StagedFolder } from '../file/staged-folder.js';
 import { refuseForeignFolder } from './suite-folder.js';
 import {
@@ -12,9 +11,8 @@ import {
   type ListedProduct,
   type Manifest,
 } from './manifest.js';
-import { refuseUnfit, sinksFor } from './outputs.js';
-import { pour } from './sink.js';
-import type { OutputForm } from './suite-definition.js';
+import { refuseUnfit } from './outputs.js';
+import { writeProductTo } from './write-product.js';
 import { loadSuite, type PlannedProduct, type Suite, type SuiteInput } from './suite.js';
 
 export interface EmitOptions {
@@ -52,7 +50,7 @@ export function emitSuite(suiteFile: string, folder: string, options: EmitOption
   try {
     const inputs = writeInputs(staged, suite.inputs);
     const products = suite.products.map((planned) =>
-      inPlace(planned, () => writeProduct(staged, planned, options)),
+      inPlace(planned, () => emitProduct(staged, planned, options)),
     );
     const manifest = newManifest(suite.name, inputs, products);
     staged.write(MANIFEST_NAME, manifestText(manifest));
@@ -75,27 +73,16 @@ function writeInputs(staged: StagedFolder, inputs: readonly SuiteInput[]): Liste
   });
 }
 
-function writeProduct(
+function emitProduct(
   staged: StagedFolder,
-  planned: PlannedProduct,
+  { build, outputs, source }: PlannedProduct,
   { progress }: EmitOptions,
 ): ListedProduct {
-  const product = planned.build();
-  const open: { file: StagedFile; form: OutputForm }[] = [];
-  try {
-    const sinks = sinksFor(product, planned.outputs, (path, form) => {
-      const file = staged.file(path);
-      open.push({ file, form });
-      return (chunk) => {
-        file.write(chunk);
-      };
-    });
-    pour(product, sinks, (done, total) => progress?.(product.name, done, total));
-    const files = open.map(({ file, form }) => ({ ...file.end(), form }));
-    return listProduct(product, planned.source, files);
-  } finally {
-    for (const { file } of open) file.close();
-  }
+  const product = build();
+  const files = writeProductTo(staged, product, outputs, (done, total) =>
+    progress?.(product.name, done, total),
+  );
+  return listProduct(product, source, files);
 }
 
 /** Faults without a place are about what the suite file asked for. */
