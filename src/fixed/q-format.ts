@@ -14,7 +14,7 @@ export interface QFormat {
  * Reads the name of a Q-format: `UQ8.8`, `Q3.12`, `Q15`, `Q15/32`. Case does not matter.
  *
  * UQm.n is unsigned and m + n bits wide. Signed names follow one of two conventions: m excludes
- * the sign (TI, m + n + 1 bits) or counts it (ARM, m + n bits). A width, given as `bits` or by a
+ * the sign (m + n + 1 bits) or counts it (m + n bits). A width, given as `bits` or by a
  * suffix as in `Q4.12/17`, tells which. Without one, a name whose m + n is 8, 16 or 32 counts the
  * sign (Q4.12 is 16 bits wide, Q16.16 is 32), and every other name excludes it (Q3.12, 16 bits).
  * m may be negative.

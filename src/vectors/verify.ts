@@ -20,7 +20,7 @@ export interface Verification {
   readonly problems: readonly Problem[];
 }
 
-export interface Tally {
+interface Tally {
   readonly what: string;
   readonly held: number;
   readonly of: number;
