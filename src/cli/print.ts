@@ -41,16 +41,23 @@ const BLANK = {
   ...{ left: '', 'left-mid': '', mid: '', 'mid-mid': '', right: '', 'right-mid': '', middle: '' },
 };
 
-const coloursFor = (stream: NodeJS.WriteStream) =>
-  pc.createColors(
-    stream.isTTY && process.env['NO_COLOR'] === undefined && process.env['TERM'] !== 'dumb',
-  );
+// A plain boolean: the library takes undefined for "decide yourself", and then colours CI logs.
+const coloursFor = (stream: NodeJS.WriteStream) => {
+  const { NO_COLOR: refused = '', TERM: terminal } = process.env;
+  // A pipe has no isTTY at all.
+  const isTerminal = (stream.isTTY as boolean | undefined) === true;
+  return pc.createColors(isTerminal && refused === '' && terminal !== 'dumb');
+};
 export const colours = coloursFor(process.stdout);
 const errColours = coloursFor(process.stderr);
 
 /** Braille needs a terminal that shows Unicode. */
 export const showsUnicode = (): boolean =>
-  /utf-?8/i.test(process.env['LC_ALL'] ?? process.env['LC_CTYPE'] ?? process.env['LANG'] ?? '');
+  /utf-?8/i.test(
+    [process.env['LC_ALL'], process.env['LC_CTYPE'], process.env['LANG']].find(
+      (value) => value !== undefined && value !== '',
+    ) ?? '',
+  );
 
 const EXIT_CODES = { input: 2, check: 1, world: 3 } as const;
 
