@@ -1,33 +1,21 @@
-import { exp } from '../numeric/exponential.js';
-import {
-  BOLTZMANN,
-  ELEMENTARY_CHARGE,
-  STC_IRRADIANCE,
-  STC_TEMPERATURE,
-  type AmperesPerKelvin,
-  type Kelvin,
-  type WattsPerSquareMetre,
-} from '../quantities.js';
+/** How the five parameters move with the weather: the rules a module is translated by. */
+import type { Kelvin, WattsPerSquareMetre } from '../quantities.js';
+import type { Datasheet } from './datasheet.js';
 import type { SingleDiode } from './single-diode.js';
-import { TECHNOLOGIES, type TechnologyName } from './technology.js';
+import { translateDeSoto, type DeSotoBehaviour } from './translate/de-soto-2006.js';
+import { translateVillalva, type VillalvaBehaviour } from './translate/villalva-2009.js';
 
-/** What translation needs beside the five parameters at STC. */
-export interface TemperatureBehaviour {
-  readonly technology: TechnologyName;
-  /** Change of short-circuit current with cell temperature at 1000 W/m². */
-  readonly shortCircuitCoefficient: AmperesPerKelvin;
-}
+export { saturationRatio } from './translate/de-soto-2006.js';
+
+export const TRANSLATIONS = ['de-soto-2006', 'villalva-2009'] as const;
+export type TranslationName = (typeof TRANSLATIONS)[number];
+
+/** What translation needs beside the five parameters at STC, for each set of rules. */
+export type TemperatureBehaviour = DeSotoBehaviour | VillalvaBehaviour;
 
 /**
- * The five parameters at another irradiance and cell temperature, from those at STC, after
- * De Soto, Klein and Beckman 2006 (Solar Energy 80:78-88), with the air-mass modifier at 1:
- *
- *     a    = a_r T/T_r           Iph = (G/G_r) (Iph_r + alpha (T - T_r))
- *     I0   = I0_r (T/T_r)³ exp(Eg_r / (k T_r) - Eg(T) / (k T)),  Eg(T) = Eg_r (1 + c (T - T_r))
- *     Rsh  = Rsh_r G_r/G         Rs  = Rs_r
- *
- * Exact by construction at STC. Irradiance 0 gives no photocurrent and no shunt path.
- * Range: irradiance 0 to 2000 W/m²; a photocurrent that would fall below zero is held at zero.
+ * The five parameters at another irradiance and cell temperature, from those at STC, by the rules
+ * that the behaviour names: see `translateDeSoto` and `translateVillalva`. Both are exact at STC.
  */
 export function translate(
   reference: SingleDiode,
@@ -35,41 +23,25 @@ export function translate(
   irradiance: WattsPerSquareMetre,
   temperature: Kelvin,
 ): SingleDiode {
-  const sun = irradiance / SUN;
-  const rise = temperature - REFERENCE;
-  const ratio = temperature / REFERENCE;
-  const photocurrent = sun * (reference.photocurrent + behaviour.shortCircuitCoefficient * rise);
+  return behaviour.translation === 'villalva-2009'
+    ? translateVillalva(reference, behaviour, irradiance, temperature)
+    : translateDeSoto(reference, behaviour, irradiance, temperature);
+}
+
+/** The behaviour of a datasheet's module under a set of rules. */
+export function behaviourOf(
+  datasheet: Datasheet,
+  translation: TranslationName = 'de-soto-2006',
+): TemperatureBehaviour {
+  const { technology, shortCircuitCoefficient } = datasheet;
+  if (translation === 'de-soto-2006') return { technology, shortCircuitCoefficient };
+  const { openCircuitCoefficient, shortCircuitCurrent, openCircuitVoltage } = datasheet;
   return {
-    photocurrent: Math.max(photocurrent, 0),
-    saturationCurrent:
-      reference.saturationCurrent * saturationRatio(behaviour.technology, temperature),
-    idealityVoltage: reference.idealityVoltage * ratio,
-    seriesResistance: reference.seriesResistance,
-    shuntConductance: reference.shuntConductance * sun,
+    translation,
+    technology,
+    shortCircuitCoefficient,
+    openCircuitCoefficient,
+    shortCircuitCurrent,
+    openCircuitVoltage,
   };
 }
-
-/** I0(T) / I0(25 °C) of a technology. */
-export function saturationRatio(technology: TechnologyName, temperature: Kelvin): number {
-  const ratio = temperature / REFERENCE;
-  const share = (temperature - REFERENCE) / temperature;
-  return ratio * ratio * ratio * exp(STEEPNESS[technology] * share);
-}
-
-// Engines fold a module's own constants into the code, but look imported ones up at every call.
-const SUN = STC_IRRADIANCE;
-const REFERENCE = STC_TEMPERATURE;
-
-/** Electronvolts over k: an energy of 1 eV in kelvin. */
-const PER_KELVIN = ELEMENTARY_CHARGE / BOLTZMANN;
-
-/**
- * (Eg_r / k) (1/T_r - c), which makes the exponent of I0 one product with (T - T_r) / T instead of
- * a difference of two large terms.
- */
-const STEEPNESS = Object.fromEntries(
-  Object.entries(TECHNOLOGIES).map(([name, { bandGap, bandGapSlope }]) => [
-    name,
-    bandGap * PER_KELVIN * (1 / REFERENCE - bandGapSlope),
-  ]),
-) as Record<TechnologyName, number>;

@@ -9,16 +9,18 @@
  */
 import { describe, expect, test } from 'vitest';
 import { exp, expm1 } from '../../src/numeric/exponential.js';
-import { fromCelsius, thermalVoltage } from '../../src/quantities.js';
+import { fromCelsius, thermalVoltage, uniformConditions } from '../../src/quantities.js';
 import type { Datasheet } from '../../src/source/datasheet.js';
 import { fitSimultaneously } from '../../src/source/fit/simultaneous.js';
 import { sweepIdeality, type SweepCandidate } from '../../src/source/fit/sweep.js';
+import { Module } from '../../src/source/module.js';
 import { SingleDiodeCurve } from '../../src/source/single-diode-curve.js';
 import {
   slopeAtJunction,
   voltageAtCurrent,
   type SingleDiode,
 } from '../../src/source/single-diode.js';
+import { behaviourOf } from '../../src/source/translation.js';
 
 const CELLS = 54;
 /** VT = Ns A k T / q. */
@@ -108,17 +110,13 @@ describe('The published parameters', () => {
 });
 
 describe('Under the rules of the paper, Rs and Rsh held, the curve at', () => {
-  /** Iph = (Iph,n + K_I dT) G / Gn, I0 = (Isc,n + K_I dT) / (exp((Voc,n + K_V dT) / VT) - 1). */
-  function at(irradiance: number, celsius: number): SingleDiode {
-    const rise = celsius - 25;
-    const a = idealityVoltage(1.3, celsius);
-    return {
-      ...PUBLISHED,
-      photocurrent: ((8.214 + 0.0032 * rise) * irradiance) / 1000,
-      saturationCurrent: (8.21 + 0.0032 * rise) / expm1((32.9 - 0.123 * rise) / a),
-      idealityVoltage: a,
-    };
-  }
+  // I0 at STC is that of the rule, 9.825010258e-8 A, as it was for the grid.
+  const module = new Module(
+    '54 cells, 200 W',
+    CELLS,
+    { ...PUBLISHED, saturationCurrent: 8.21 / expm1(32.9 / idealityVoltage(1.3)) },
+    behaviourOf(DATASHEET, 'villalva-2009'),
+  );
 
   test.each([
     [1000, 25, '8.209632', '32.883412', '26.349001', '7.595569', '200.135658'],
@@ -133,7 +131,7 @@ describe('Under the rules of the paper, Rs and Rsh held, the curve at', () => {
     [200, 25, '1.641926', '29.917211', '24.710378', '1.477578', '36.511501'],
     [100, 25, '0.820963', '28.590060', '23.565062', '0.713645', '16.817099'],
   ])('%d W/m² and %d °C is the one computed', (irradiance, celsius, isc, voc, vmp, imp, pmp) => {
-    const curve = new SingleDiodeCurve(at(irradiance, celsius));
+    const curve = module.at(uniformConditions(irradiance, fromCelsius(celsius)));
     const peak = curve.peaks()[0]!;
     expectPrinted(curve.shortCircuitCurrent, isc);
     expectPrinted(curve.openCircuitVoltage, voc);

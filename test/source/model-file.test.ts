@@ -1,9 +1,10 @@
 import fc from 'fast-check';
 import { describe, expect, test } from 'vitest';
+import { z } from 'zod';
 import { parseInput } from '../../src/file/document.js';
 import { Random } from '../../src/numeric/random.js';
 import { fitDatasheet } from '../../src/source/fit/fit.js';
-import { modelText, parseModel } from '../../src/source/model-file.js';
+import { modelDefinition, modelText, parseModel } from '../../src/source/model-file.js';
 import { Module } from '../../src/source/module.js';
 import { datasheetOf, fillFactor } from './any-datasheet.js';
 import { anyModule } from './any-diode.js';
@@ -86,6 +87,73 @@ describe('parseModel', () => {
   });
 });
 
+describe('A model file with `translation`', () => {
+  const VILLALVA = `${TEXT}translation: villalva-2009\nisc_A: 9.18\nvoc_V: 38.1\nbeta_voc_V_per_K: -0.13\n`;
+
+  test('names the rules of 2009, and gives what they need', () => {
+    expect(parse(VILLALVA).behaviour).toEqual({
+      translation: 'villalva-2009',
+      technology: 'mono-si',
+      shortCircuitCoefficient: 0.0046,
+      shortCircuitCurrent: 9.18,
+      openCircuitVoltage: 38.1,
+      openCircuitCoefficient: -0.13,
+    });
+  });
+
+  test('names the usual rules, or none', () => {
+    const named = parse(`${TEXT}translation: de-soto-2006\n`);
+    expect(named.behaviour).toEqual(parse(TEXT).behaviour);
+  });
+
+  test('reads back from the text of its module', () => {
+    const module = parse(VILLALVA);
+    expect(parse(modelText(module)).behaviour).toEqual(module.behaviour);
+    expect(modelText(parse(TEXT))).not.toContain('translation');
+  });
+
+  test('is refused without the numbers that the rules need, all of them named', () => {
+    const text = `${TEXT}translation: villalva-2009\nvoc_V: 38.1\n`;
+    expect(problemsOf(text).map(({ code, field }) => `${code} ${field}`)).toEqual([
+      'MISSING_KEY isc_A',
+      'MISSING_KEY beta_voc_V_per_K',
+    ]);
+  });
+
+  test('is refused with numbers that its rules do not use', () => {
+    const [problem, ...others] = problemsOf(`${TEXT}voc_V: 38.1\n`);
+    expect(others).toEqual([]);
+    expect(problem).toMatchObject({ code: 'UNKNOWN_KEY', field: 'voc_V', line: 11 });
+    expect(problem!.message).toContain('translation: villalva-2009');
+  });
+
+  test.each([
+    ['beta_voc_V_per_K: -0.13', 'beta_voc_V_per_K: -0.41', 'beta_voc_V_per_K', 'voc_V = 38.1'],
+    ['alpha_isc_A_per_K: 0.0046', 'alpha_isc_A_per_K: 0.11', 'alpha_isc_A_per_K', 'isc_A = 9.18'],
+  ])(
+    'is refused with %s replaced by %s, at which a curve would vanish',
+    (from, to, field, says) => {
+      const [problem, ...others] = problemsOf(VILLALVA.replace(from, to));
+      expect(others).toEqual([]);
+      expect(problem).toMatchObject({ code: 'IMPOSSIBLE_VALUE', field });
+      expect(problem!.message).toContain(`must leave ${says} above 0 from -60 to 120 °C`);
+    },
+  );
+
+  test('says in its JSON Schema which keys go with the rules of 2009', () => {
+    expect(z.toJSONSchema(modelDefinition, { io: 'input' })).toMatchObject({
+      if: { properties: { translation: { const: 'villalva-2009' } }, required: ['translation'] },
+      then: { required: ['isc_A', 'voc_V', 'beta_voc_V_per_K'] },
+    });
+  });
+
+  test('is refused with rules that are not known', () => {
+    const [problem] = problemsOf(`${TEXT}translation: villalva\n`);
+    expect(problem).toMatchObject({ code: 'INVALID_VALUE', field: 'translation' });
+    expect(problem!.message).toContain('one of de-soto-2006, villalva-2009');
+  });
+});
+
 describe('modelText', () => {
   const modules = fc.integer({ min: 0, max: 1e9 }).map((seed) => {
     const { technology, cellsInSeries, diode } = anyModule(new Random(seed));
@@ -129,7 +197,7 @@ describe('modelText', () => {
       fc.property(
         fc.integer({ min: 0, max: 1e9 }),
         fc.constantFrom('both', 'at short circuit', 'at open circuit', 'none'),
-        fc.constantFrom('simultaneous', 'sweep', undefined),
+        fc.constantFrom('exact', 'simultaneous', 'sweep', undefined),
         (seed, slopes, method) => {
           const sheet = datasheetOf(anyModule(new Random(seed)), { slopes, figures: 3 });
           fc.pre(fillFactor(sheet) > 0.3 && fillFactor(sheet) < 0.9);
