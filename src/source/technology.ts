@@ -1,8 +1,10 @@
 /**
  * Materials of cells: band gaps and what is plausible for one cell.
  *
- * Silicon: 1.121 eV and -0.0002677 1/K, De Soto, Klein and Beckman 2006 (Solar Energy 80:78-88).
- * The other band gaps are commonly used with the same method but are from memory, unconfirmed.
+ * Silicon: 1.121 eV and -0.0002677 1/K, De Soto, Klein and Beckman 2006 (Solar Energy 80:78-88);
+ * two independent copies agree. The other band gaps and their slopes are commonly used with the
+ * same method but are from memory, unconfirmed. The slope of CIGS is 0 because no value is agreed on,
+ * that of triple junctions because none was at hand.
  */
 export interface Technology {
   readonly title: string;
@@ -14,6 +16,11 @@ export interface Technology {
   readonly bandGapSlope: number;
   /** Plausible open-circuit voltage of one cell at STC, in volts. */
   readonly cellVoltage: readonly [least: number, most: number];
+  /**
+   * A of one cell where nothing of a datasheet settles it: the figures that circulate in the trade
+   * for each material, from memory, unconfirmed. A coefficient of the datasheet does far better.
+   */
+  readonly typicalIdeality: number;
 }
 
 const SILICON = {
@@ -24,14 +31,15 @@ const SILICON = {
 } as const;
 
 export const TECHNOLOGIES = {
-  'mono-si': { title: 'monocrystalline silicon', ...SILICON },
-  'poly-si': { title: 'polycrystalline silicon', ...SILICON },
+  'mono-si': { title: 'monocrystalline silicon', ...SILICON, typicalIdeality: 1.2 },
+  'poly-si': { title: 'polycrystalline silicon', ...SILICON, typicalIdeality: 1.3 },
   cdte: {
     title: 'cadmium telluride',
     junctions: 1,
     bandGap: 1.475,
     bandGapSlope: -0.0003,
     cellVoltage: [0.3, 1.4],
+    typicalIdeality: 1.5,
   },
   cis: {
     title: 'copper indium selenide',
@@ -39,6 +47,7 @@ export const TECHNOLOGIES = {
     bandGap: 1.01,
     bandGapSlope: -0.00011,
     cellVoltage: [0.3, 1.1],
+    typicalIdeality: 1.5,
   },
   cigs: {
     title: 'copper indium gallium selenide',
@@ -46,6 +55,7 @@ export const TECHNOLOGIES = {
     bandGap: 1.15,
     bandGapSlope: 0,
     cellVoltage: [0.3, 1.1],
+    typicalIdeality: 1.5,
   },
   gaas: {
     title: 'gallium arsenide',
@@ -53,6 +63,7 @@ export const TECHNOLOGIES = {
     bandGap: 1.424,
     bandGapSlope: -0.000433,
     cellVoltage: [0.5, 1.5],
+    typicalIdeality: 1.3,
   },
   'a-si-triple': {
     title: 'triple-junction amorphous silicon',
@@ -60,6 +71,7 @@ export const TECHNOLOGIES = {
     bandGap: 1.6,
     bandGapSlope: 0,
     cellVoltage: [1, 3],
+    typicalIdeality: 5,
   },
 } as const satisfies Readonly<Record<string, Technology>>;
 

@@ -12,6 +12,7 @@ import { describe, expect, test } from 'vitest';
 import { exp } from '../../src/numeric/exponential.js';
 import { fromCelsius, thermalVoltage } from '../../src/quantities.js';
 import type { Datasheet } from '../../src/source/datasheet.js';
+import { fitExactly } from '../../src/source/fit/exact.js';
 import { fitSimultaneously } from '../../src/source/fit/simultaneous.js';
 import type { SingleDiode } from '../../src/source/single-diode.js';
 import { SingleDiodeCurve } from '../../src/source/single-diode-curve.js';
@@ -96,6 +97,43 @@ describe('The solution of the five equations', () => {
       expect(Math.abs(fit.diode.shuntConductance / diode.shuntConductance - 1)).toBeLessThan(1e-8);
     },
   );
+});
+
+describe('The exact fit', () => {
+  const DATASHEET: Datasheet = {
+    name: '54 cells, 200 W',
+    technology: 'poly-si',
+    cellsInSeries: 54,
+    shortCircuitCurrent: 8.21,
+    openCircuitVoltage: 32.9,
+    peakCurrent: 7.61,
+    peakVoltage: 26.3,
+    shortCircuitCoefficient: 0.0032,
+    openCircuitCoefficient: -0.123,
+  };
+
+  test.each(SOLUTIONS)(
+    'finds the solution over $span from the datasheet alone, to its last digit',
+    ({ span, diode, ideality }) => {
+      const fit = fitExactly(DATASHEET, { span: Number.parseFloat(span) });
+      expect(fit.solved).toBe(true);
+      expect(fit.fifth).toMatchObject({ name: 'beta', met: true });
+      // Half a unit of the last digit printed.
+      expect(Math.abs(fit.diode.photocurrent - diode.photocurrent)).toBeLessThan(5.1e-9);
+      expect(Math.abs(fit.diode.saturationCurrent - diode.saturationCurrent)).toBeLessThan(5.1e-19);
+      expect(Math.abs(fit.diode.idealityVoltage - diode.idealityVoltage)).toBeLessThan(5.1e-9);
+      expect(Math.abs(fit.ideality - ideality)).toBeLessThan(5.1e-9);
+      expect(Math.abs(fit.diode.seriesResistance - diode.seriesResistance)).toBeLessThan(5.1e-9);
+      const [found, made] = [1 / fit.diode.shuntConductance, 1 / diode.shuntConductance];
+      expect(Math.abs(found - made)).toBeLessThan(5.1e-7);
+    },
+  );
+
+  test('over 25 K, as coefficients are measured, is 0.002 of A away from that over 2 K', () => {
+    const { ideality } = fitExactly(DATASHEET);
+    expect(ideality).toBe(fitExactly(DATASHEET, { span: 25 }).ideality);
+    expect(Math.abs(ideality - SOLUTIONS[1]!.ideality)).toBeLessThan(0.0021);
+  });
 });
 
 describe('Translation from the solution over +2 K', () => {

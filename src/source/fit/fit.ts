@@ -4,11 +4,16 @@ import type { Datasheet } from '../datasheet.js';
 import { Module } from '../module.js';
 import type { SingleDiode } from '../single-diode.js';
 import { agreements, type Agreement } from './agreement.js';
+import { fitExactly, type ExactOutcome, type FifthOutcome } from './exact.js';
+import type { FeasibleRange } from './feasible-range.js';
+import type { FifthChoice } from './fifth-condition.js';
+import type { Remedy } from './infeasible.js';
 import { cellIdealityRange, type MethodOutcome } from './outcome.js';
 import { fitSimultaneously } from './simultaneous.js';
 import { sweepIdeality, type SweepCandidate } from './sweep.js';
 
-export const FIT_METHODS = ['simultaneous', 'sweep'] as const;
+/** In the order in which people should try them: see `fitDatasheet`. */
+export const FIT_METHODS = ['exact', 'simultaneous', 'sweep'] as const;
 export type FitMethod = (typeof FIT_METHODS)[number];
 
 /** A fitted module and how good the fit is. */
@@ -20,6 +25,12 @@ export interface Fit extends MethodOutcome {
   readonly warnings: readonly Problem[];
   /** All candidates of the sweep, in rising order of ideality factor; empty for other methods. */
   readonly candidates: readonly SweepCandidate[];
+  /** The ideality factors that have an exact curve: of the exact method, where it finds any. */
+  readonly feasible?: FeasibleRange;
+  /** What settled A: of the exact method, where it finds a curve. */
+  readonly fifth?: FifthOutcome;
+  /** Where no curve is exact: changes of one number that would allow one, likeliest first. */
+  readonly remedies?: readonly Remedy[];
 }
 
 /** A rule of thumb of the trade (common practice, no single source) held against the fit. */
@@ -32,29 +43,60 @@ export interface PracticeCheck {
 /**
  * Fits the five parameters to a datasheet's numbers at STC. The result never depends on a starting
  * guess.
- * @param method By default the simultaneous solution; where the datasheet admits none, the sweep,
- * with a warning `NO_EXACT_SOLUTION`.
- * @returns A Fit whose `solved` is false where the datasheet admits no solution; never a Fault.
+ * @param method
+ * - `exact`: three points, a flat peak and a fifth condition (by default the coefficient of Voc);
+ *   see `fitExactly`.
+ * - `simultaneous`: the same points without a shunt path, or with the slopes given; see
+ *   `fitSimultaneously`.
+ * - `sweep`: a closed form at each A; see `sweepIdeality`.
+ * @param choice What settles A in the exact method; the others know nothing of it.
+ * @returns A Fit whose `solved` is false where the datasheet admits no solution.
+ * @throws Fault `ARGUMENT` for a choice out of its range; never for a datasheet.
  */
-export function fitDatasheet(datasheet: Datasheet, method?: FitMethod): Fit {
-  if (method === 'sweep') return sweepFit(datasheet);
-  const outcome = fitSimultaneously(datasheet);
-  if (outcome.solved || method === 'simultaneous') {
-    return complete('simultaneous', datasheet, outcome);
+export function fitDatasheet(
+  datasheet: Datasheet,
+  method: FitMethod = 'exact',
+  choice: FifthChoice = {},
+): Fit {
+  switch (method) {
+    case 'exact':
+      return exactFit(datasheet, choice);
+    case 'simultaneous':
+      return complete(method, datasheet, fitSimultaneously(datasheet));
+    case 'sweep':
+      return sweepFit(datasheet);
   }
-  const fit = sweepFit(datasheet);
-  return fit.solved
-    ? { ...fit, warnings: [noExactSolution(fit.account), ...fit.warnings] }
-    : { ...fit, ...(outcome.advice === undefined ? {} : { advice: outcome.advice }) };
 }
 
-function noExactSolution(account: string): Problem {
-  return {
-    code: 'NO_EXACT_SOLUTION',
-    message: `no curve meets this datasheet exactly; ${account}.`,
-    hint: 'It is used. `hillproof fit FILE --method simultaneous` says why none is exact.',
-  };
+/** Every method on one datasheet, in the order of FIT_METHODS. */
+export const fitByAllMethods = (datasheet: Datasheet, choice: FifthChoice = {}): Fit[] =>
+  FIT_METHODS.map((method) => fitDatasheet(datasheet, method, choice));
+
+function exactFit(datasheet: Datasheet, choice: FifthChoice): Fit {
+  const outcome = fitExactly(datasheet, choice);
+  const fit = complete('exact', datasheet, outcome);
+  const missed = conditionWarnings(outcome);
+  // A coefficient of voltage missed so far is one thing, and said once.
+  return { ...fit, ...outcome, warnings: missed.length > 0 ? missed : fit.warnings };
 }
+
+/** A condition missed by more than rounding explains. */
+function conditionWarnings({ fifth, feasible, ideality, account }: ExactOutcome): Problem[] {
+  if (fifth === undefined || fifth.met || Math.abs(fifth.miss) <= MOST_CONDITION_MISS) return [];
+  const isLeast = ideality < 1.0001 * (feasible?.least ?? 0);
+  return [
+    {
+      code: 'CONDITION_MISSED',
+      message: `${account}.`,
+      hint: isLeast
+        ? 'It asks for an A smaller than any junction has: are there too many cells_in_series?'
+        : 'Another condition may fit better: `hillproof fit FILE --meet gamma` and the like.',
+    },
+  ];
+}
+
+// Coefficients have two or three digits.
+const MOST_CONDITION_MISS = 0.05;
 
 function sweepFit(datasheet: Datasheet): Fit {
   const { outcome, candidates } = sweepIdeality(datasheet);
@@ -89,7 +131,7 @@ function temperatureWarnings(rows: readonly Agreement[]): Problem[] {
       message:
         `the datasheet's Voc moves by ${datasheet.toFixed(0)} mV/K, the fitted module's by ` +
         `${model.toFixed(0)} mV/K: curves far from 25 °C will be off.`,
-      hint: 'Ideality factors near 1 agree best; a slope at short circuit brings A down.',
+      hint: 'The exact method, the default, meets it where any curve can.',
     }));
 }
 

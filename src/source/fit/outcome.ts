@@ -26,8 +26,10 @@ export function cellIdealityRange(datasheet: Datasheet): readonly [least: number
 }
 
 /** a = Ns A k T / q at STC. */
-export const idealityVoltageAtStc = (datasheet: Datasheet, ideality: number): Volts =>
-  datasheet.cellsInSeries * ideality * thermalVoltage(STC_TEMPERATURE);
+export const idealityVoltageAtStc = (
+  datasheet: Pick<Datasheet, 'cellsInSeries'>,
+  ideality: number,
+): Volts => datasheet.cellsInSeries * ideality * thermalVoltage(STC_TEMPERATURE);
 
 /** A ratio as people read it, with its sign: `-0.31 %`. Adding 0 turns -0 into 0. */
 export function signedPercent(ratio: number): string {

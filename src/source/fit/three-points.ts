@@ -44,6 +44,12 @@ export function peakExcess(
   return currentAtJunction(diode, peakVoltage + peakCurrent * seriesResistance) - peakCurrent;
 }
 
+/** What of a datasheet the ends of a curve depend on. */
+type DatasheetOfEnds = Pick<
+  Datasheet,
+  'cellsInSeries' | 'shortCircuitCurrent' | 'openCircuitVoltage' | 'slopeAtShortCircuit'
+>;
+
 /**
  * Iph, I0 and Gsh that give the short-circuit current, its slope and the open-circuit voltage, for
  * given A and Rs. With u1 = Isc Rs and s the slope's size, these are linear:
@@ -56,7 +62,7 @@ export function peakExcess(
  * short circuit to the peak leave I0 above zero.
  */
 export function throughBothEnds(
-  datasheet: Datasheet,
+  datasheet: DatasheetOfEnds,
   ideality: number,
   seriesResistance: Ohms,
 ): SingleDiode {

@@ -2,7 +2,12 @@ import { describe, expect, test } from 'vitest';
 import { STC_TEMPERATURE, uniformConditions } from '../../../src/quantities.js';
 import { globalPeak } from '../../../src/source/curve.js';
 import type { Datasheet } from '../../../src/source/datasheet.js';
-import { FIT_METHODS, fitDatasheet, type Fit } from '../../../src/source/fit/fit.js';
+import {
+  FIT_METHODS,
+  fitByAllMethods,
+  fitDatasheet,
+  type Fit,
+} from '../../../src/source/fit/fit.js';
 import { SingleDiodeCurve } from '../../../src/source/single-diode-curve.js';
 
 const SHEET: Datasheet = {
@@ -17,44 +22,58 @@ const SHEET: Datasheet = {
   openCircuitCoefficient: -0.123,
   peakPowerCoefficient: -0.0047,
 };
-/** No curve is exact, but the sweep comes near: the slope at short circuit is a little too steep. */
-const NEARLY: Datasheet = { ...SHEET, slopeAtShortCircuit: -0.008 };
 /** Far too many cells. */
-const HOPELESS: Datasheet = { ...SHEET, cellsInSeries: 100, slopeAtShortCircuit: -0.015 };
+const HOPELESS: Datasheet = { ...SHEET, cellsInSeries: 150, slopeAtShortCircuit: -0.015 };
 
 const codesOf = (fit: Fit): string[] => fit.warnings.map(({ code }) => code);
 
 describe('fitDatasheet', () => {
-  test('takes the simultaneous solution where there is one', () => {
+  test('takes the exact solution, and says what settled A and within which range', () => {
     const fit = fitDatasheet(SHEET);
-    expect(fit.method).toBe('simultaneous');
+    expect(fit.method).toBe('exact');
     expect(fit.solved).toBe(true);
-    expect(codesOf(fit)).not.toContain('NO_EXACT_SOLUTION');
+    expect(fit.fifth).toMatchObject({ name: 'beta', wanted: -0.123, met: true });
+    expect(fit.feasible!.least).toBeLessThan(fit.ideality);
+    expect(fit.feasible!.most).toBeGreaterThan(fit.ideality);
+    expect(fit.warnings).toEqual([]);
     expect(fit.candidates).toEqual([]);
   });
 
-  test('takes the best of the sweep where there is none, and says so in two lines', () => {
-    const fit = fitDatasheet(NEARLY);
-    expect(fit.method).toBe('sweep');
-    expect(fit.solved).toBe(true);
-    expect(fit.candidates).toHaveLength(101);
-    expect(codesOf(fit)).toEqual(['NO_EXACT_SOLUTION']);
-    const { code, message, hint } = fit.warnings[0]!;
-    expect(code).toBe('NO_EXACT_SOLUTION');
-    expect(message).toMatch(
-      /^no curve meets this datasheet exactly; the best candidate of the sweep/,
-    );
-    expect(message.length).toBeLessThan(200);
-    expect(hint).toMatch(/^It is used\. `hillproof fit FILE --method simultaneous` says why/);
+  test('passes on what is to settle A', () => {
+    expect(fitDatasheet(SHEET, 'exact', { meet: 'gamma' }).fifth!.name).toBe('gamma');
+    expect(fitDatasheet(SHEET, undefined, { ideality: 1.2 }).ideality).toBeCloseTo(1.2, 12);
   });
 
-  test('says unsolved where the sweep comes near no more, and why', () => {
+  test('says unsolved where no curve is exact, which condition fails, and what to check', () => {
     const fit = fitDatasheet(HOPELESS);
-    expect(fit.method).toBe('sweep');
+    expect(fit.method).toBe('exact');
     expect(fit.solved).toBe(false);
     expect(fit.warnings).toEqual([]);
-    expect(fit.account).toMatch(/^the best candidate of the sweep, A = 1 .*, misses Voc by/);
-    expect(fit.advice).toMatch(/^they are met at no other A either; look for/);
+    expect(fit.account).toMatch(/^the knee is squarer than any junction's/);
+    expect(fit.advice).toMatch(/^check cells_in_series first/);
+    expect(fit.remedies!.length).toBeGreaterThan(1);
+  });
+
+  test('warns where the condition is missed by more than rounding explains, and of what it hints at', () => {
+    const many = fitDatasheet({ ...SHEET, cellsInSeries: 100 });
+    expect(many.solved).toBe(true);
+    expect(codesOf(many)).toEqual(['CONDITION_MISSED']);
+    expect(many.warnings[0]!.hint).toContain('too many cells_in_series');
+    const few = fitDatasheet({ ...SHEET, openCircuitCoefficient: -0.25 });
+    expect(codesOf(few)).toEqual(['CONDITION_MISSED']);
+    expect(few.warnings[0]!.message).toMatch(/misses by \+1\d\.\d\d %\.$/);
+    expect(few.warnings[0]!.hint).toContain('--meet gamma');
+    // Missed by 1 %, which is rounding's.
+    const { value } = few.fifth!;
+    expect(codesOf(fitDatasheet({ ...SHEET, openCircuitCoefficient: 1.01 * value }))).toEqual([]);
+  });
+
+  test('puts every method side by side, each as when asked for alone', () => {
+    const fits = fitByAllMethods(SHEET, { meet: 'gamma' });
+    expect(fits.map(({ method }) => method)).toEqual([...FIT_METHODS]);
+    for (const fit of fits) {
+      expect(fit.diode).toEqual(fitDatasheet(SHEET, fit.method, { meet: 'gamma' }).diode);
+    }
   });
 
   test('keeps to the method asked for, solved or not', () => {
@@ -62,23 +81,19 @@ describe('fitDatasheet', () => {
       expect(fitDatasheet(SHEET, method)).toMatchObject({ method, solved: true });
       expect(fitDatasheet(HOPELESS, method)).toMatchObject({ method, solved: false });
     }
-    expect(fitDatasheet(NEARLY, 'simultaneous').solved).toBe(false);
-    expect(codesOf(fitDatasheet(NEARLY, 'sweep'))).toEqual([]);
   });
 
   test('warns where the module’s voltage moves otherwise with temperature than the datasheet says', () => {
     // The translation takes no coefficient of voltage; at A = 1.41 it gives -218 mV/K.
-    const fit = fitDatasheet(SHEET);
+    const fit = fitDatasheet(SHEET, 'simultaneous');
     expect(codesOf(fit)).toEqual(['TEMPERATURE_MISS']);
     const { message, hint } = fit.warnings[0]!;
     expect(message).toMatch(
       /^the datasheet's Voc moves by -123 mV\/K, the fitted module's by -21\d mV/,
     );
-    expect(hint).toMatch(/a slope at short circuit brings A down/);
     // As the hint says.
-    const sloped = fitDatasheet({ ...SHEET, slopeAtShortCircuit: -1 / 162 });
-    expect(sloped.solved).toBe(true);
-    expect(codesOf(sloped)).toEqual([]);
+    expect(hint).toMatch(/^The exact method, the default, meets it/);
+    expect(codesOf(fitDatasheet(SHEET))).toEqual([]);
   });
 
   test('makes a module of the datasheet, whose curve at STC is that of the diode', () => {
@@ -93,7 +108,7 @@ describe('fitDatasheet', () => {
   });
 
   test('holds every number of the datasheet against the model, in the units of the file', () => {
-    const { agreements } = fitDatasheet(NEARLY);
+    const { agreements } = fitDatasheet({ ...SHEET, slopeAtShortCircuit: -0.008 });
     expect(agreements.map(({ field }) => field)).toEqual([
       'isc_A',
       'voc_V',
