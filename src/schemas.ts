@@ -1,12 +1,16 @@
 /** The JSON Schemas of all input files, from the definitions that validate them. */
 import { z } from 'zod';
+import { arrayDefinition } from './source/network/array-definition.js';
 import { datasheetDefinition } from './source/datasheet-definition.js';
+import { en50530Definition } from './source/en-50530/file.js';
 import { modelDefinition } from './source/model-file.js';
 import { suiteDefinition } from './vectors/suite-definition.js';
 import { weatherDefinition } from './weather/definition.js';
 
 const DEFINITIONS = {
+  array: arrayDefinition,
   datasheet: datasheetDefinition,
+  generator: en50530Definition,
   model: modelDefinition,
   suite: suiteDefinition,
   weather: weatherDefinition,

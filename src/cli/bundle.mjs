@@ -1,7 +1,8 @@
 /**
  * The last step of the build: packs dist/cli/main.js, what it imports and commander into one file.
  * Node takes its time over every module it loads, and help would need twenty. What a command
- * imports when it runs stays in files of its own, which the library shares.
+ * imports when it runs stays in files of its own, which the library shares. A class that errors are
+ * told by, such as Fault, must be imported that way too: packed in, it would be another class.
  */
 import { readFileSync } from 'node:fs';
 import { createRequire } from 'node:module';

@@ -27,10 +27,10 @@ export function demoCommand() {
       const { pictureOf } = await import('./picture.js');
       const { printEmission } = await import('./emit.js');
       const { printVerification } = await import('./verify.js');
-      const { module } = loadSource(`${inputs}module.yaml`);
-      printLine(`${module.name} at 1000 W/m², 25 °C`);
+      const { source } = loadSource(`${inputs}module.yaml`);
+      printLine(`${source.name} at 1000 W/m², 25 °C`);
       printLine();
-      for (const line of pictureOf(module.at(uniformConditions(STC_IRRADIANCE, STC_TEMPERATURE)))) {
+      for (const line of pictureOf(source.at(uniformConditions(STC_IRRADIANCE, STC_TEMPERATURE)))) {
         printLine(`  ${line}`);
       }
       printLine();

@@ -7,6 +7,7 @@ import { curveCommand } from './curve.js';
 import { demoCommand } from './demo.js';
 import { emitCommand } from './emit.js';
 import { fitCommand } from './fit.js';
+import { fitCurveCommand } from './fit-curve.js';
 import { schemaCommand } from './schema.js';
 import { verifyCommand } from './verify.js';
 
@@ -23,6 +24,7 @@ const program = new Command('hillproof')
 
 for (const command of [
   fitCommand(),
+  fitCurveCommand(),
   curveCommand(),
   emitCommand(),
   verifyCommand(),

@@ -1,6 +1,6 @@
 import { Argument, Command } from '@commander-js/extra-typings';
 
-const NAMES = ['datasheet', 'model', 'suite', 'weather'] as const;
+const NAMES = ['array', 'datasheet', 'generator', 'model', 'suite', 'weather'] as const;
 
 export function schemaCommand() {
   return new Command('schema')

@@ -4,6 +4,8 @@ import type { InputDocument } from './document.js';
 /** Kinds of input files, and the key by which each is told. */
 const TELLTALES = {
   model: 'model',
+  array: 'array',
+  generator: 'generator',
   suite: 'suite',
   weather: 'blocks',
   datasheet: 'isc_A',

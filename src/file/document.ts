@@ -132,7 +132,9 @@ function valueNode(root: ParsedNode, path: FieldPath): ParsedNode {
 function child(node: ParsedNode, step: PropertyKey): ParsedNode | undefined {
   if (isSeq(node)) return node.items[Number(step)];
   if (!isMap(node)) return undefined;
-  return (node.get(String(step), true) as ParsedNode | undefined) ?? undefined;
+  // Keys may be numbers, which data shows as text.
+  const pair = node.items.find(({ key }) => scalarText(key) === String(step));
+  return pair?.value ?? undefined;
 }
 
 function keyNode(root: ParsedNode, path: FieldPath): ParsedNode | undefined {

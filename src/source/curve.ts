@@ -23,7 +23,7 @@ export interface Curve {
 /** Anything that has an I-V curve under given conditions: a module, a string, an array. */
 export interface Source {
   readonly name: string;
-  /** How many pairs of irradiance and temperature `at` expects. */
+  /** Shading groups: `at` takes a pair of irradiance and temperature for each, or one for all. */
   readonly groups: number;
   at(conditions: Conditions): Curve;
 }

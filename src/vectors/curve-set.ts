@@ -37,7 +37,7 @@ export function curveSet(plan: CurveSetPlan): Product {
   const voltage = pointLayout.columns[0]!.quantizer;
   const tables = plan.conditions.map((conditions) => tabulate(source, conditions, points, voltage));
   const curveLayout = layOut([
-    ...conditionColumns(source.groups, formats),
+    ...conditionColumns(plan.conditions[0]?.irradiance.length ?? 1, formats),
     ...keyPointColumns(formats),
     ...indexColumns(),
   ]);

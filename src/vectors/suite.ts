@@ -1,4 +1,3 @@
-import { dirname, isAbsolute, join } from 'node:path';
 import { Fault, type Place, type Problem } from '../fault.js';
 import { fieldProblem, interpret } from '../file/definition.js';
 import { refuseOtherKinds } from '../file/document-kind.js';
@@ -9,7 +8,7 @@ import { codeFormatFrom, type CodeFormatDefinition } from '../fixed/file-definit
 import { productFormat } from '../fixed/product-format.js';
 import { fromCelsius, uniformConditions, type Conditions } from '../quantities.js';
 import type { Source } from '../source/curve.js';
-import { parseSource } from '../source/source-file.js';
+import { besideFile, parseSource } from '../source/source-file.js';
 import { parseWeather } from '../weather/load.js';
 import type { Weather } from '../weather/weather.js';
 import { curveSet } from './curve-set.js';
@@ -27,13 +26,13 @@ import { timeline } from './timeline.js';
 export interface Suite {
   readonly name: string;
   readonly products: readonly PlannedProduct[];
-  /** The suite file first, then every file it names, as written there. */
+  /** The suite file first, then every file it names, and every file that those name. */
   readonly inputs: readonly SuiteInput[];
   readonly warnings: readonly Problem[];
 }
 
 export interface SuiteInput {
-  /** As the suite file names it; `undefined` for the suite file itself. */
+  /** As the suite file names it, or would; `undefined` for the suite file itself. */
   readonly namedAs: string | undefined;
   readonly text: string;
   readonly file: string;
@@ -59,9 +58,7 @@ export function loadSuite(file: string, find?: FindInput): Suite {
   const document = readInput(file);
   refuseOtherKinds(document, 'suite');
   const entries = interpret(document, suiteDefinition);
-  const findInput =
-    find ?? ((namedAs) => (isAbsolute(namedAs) ? namedAs : join(dirname(file), namedAs)));
-  const reader = new SuiteReader(document, findInput);
+  const reader = new SuiteReader(document, find ?? ((namedAs) => besideFile(file, namedAs)));
   const formats = reader.formats(entries.formats);
   const sources = Object.entries(entries.sources).map(
     ([label, namedAs]) => [label, reader.source(label, namedAs)] as const,
@@ -163,9 +160,12 @@ class SuiteReader {
 
   source(label: string, namedAs: string): Source | undefined {
     return this.#attempt(['sources', label], () => {
-      const reading = parseSource(this.#read(namedAs));
+      // What a source names is named from its own folder, and so listed as the suite would name it.
+      const reading = parseSource(this.#read(namedAs), (inner) =>
+        this.#read(besideFile(namedAs, inner)),
+      );
       this.warnings.push(...reading.warnings);
-      return reading.module;
+      return reading.source;
     });
   }
 

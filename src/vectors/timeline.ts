@@ -27,11 +27,11 @@ export function timeline(plan: TimelinePlan): Product {
   const { source, weather, period, formats } = plan;
   const layout = layOut([
     { name: 'time', quantity: 'time', format: formats.time },
-    ...conditionColumns(source.groups, formats),
+    ...conditionColumns(weather.groups, formats),
     ...keyPointColumns(formats),
     ...peakColumns(formats),
   ]);
-  const { groups } = source;
+  const { groups } = weather;
   const rest = 1 + 2 * groups;
   const conditions = writableConditions(groups);
   const { irradiance, cellTemperature } = conditions;

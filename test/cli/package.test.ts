@@ -29,8 +29,8 @@ test('the packed package, installed in an empty folder, runs, is imported and ty
   writeFileSync(
     join(user, 'use.ts'),
     `import { loadSource, uniformConditions, fromCelsius, type Peak } from 'hillproof';
-const { module } = loadSource('demo/inputs/module.yaml');
-const peaks: readonly Peak[] = module.at(uniformConditions(1000, fromCelsius(25))).peaks();
+const { source } = loadSource('demo/inputs/module.yaml');
+const peaks: readonly Peak[] = source.at(uniformConditions(1000, fromCelsius(25))).peaks();
 console.log(peaks[0]?.power.toFixed(2));
 `,
   );

@@ -1,7 +1,7 @@
 import { spawnSync } from 'node:child_process';
 import { fileURLToPath } from 'node:url';
 
-const PROGRAM = fileURLToPath(new URL('../../dist/cli/main.js', import.meta.url));
+export const PROGRAM = fileURLToPath(new URL('../../dist/cli/main.js', import.meta.url));
 export const DEMO = fileURLToPath(new URL('../../vectors/demo/', import.meta.url));
 
 export interface Run {

@@ -13,12 +13,12 @@ import {
 import { newFolder } from '../new-folder.js';
 
 test('a curve set made in code is written and read back without a suite file', () => {
-  const { module } = loadSource(
+  const { source } = loadSource(
     new URL('../../vectors/demo/module.yaml', import.meta.url).pathname,
   );
   const product = curveSet({
     name: 'by-hand',
-    source: module,
+    source,
     conditions: [uniformConditions(700, fromCelsius(35))],
     points: 16,
     formats: {
