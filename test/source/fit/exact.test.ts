@@ -294,7 +294,7 @@ describe('fitExactly, where no curve is exact,', () => {
       const { solved, diode, remedies, account } = fitExactly({ ...SHEET, ...change });
       expect(solved).toBe(false);
       expect(account).not.toBe('');
-      expect(remedies).toBeDefined();
+      expect(Array.isArray(remedies)).toBe(true);
       expect(Object.values(diode).every((value) => Number.isFinite(value) && value >= 0)).toBe(
         true,
       );
