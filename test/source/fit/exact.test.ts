@@ -11,18 +11,10 @@ import { SingleDiodeCurve } from '../../../src/source/single-diode-curve.js';
 import { TECHNOLOGIES } from '../../../src/source/technology.js';
 import { anyModule, type AnyModule } from '../any-diode.js';
 import { faultOf } from '../fault-of.js';
+import { VILLALVA_DATASHEET } from '../villalva-datasheet.js';
 
-/** The 54-cell module of Villalva, Gazoli and Ruppert Filho 2009. */
 const SHEET: Datasheet = {
-  name: '54 cells',
-  technology: 'poly-si',
-  cellsInSeries: 54,
-  shortCircuitCurrent: 8.21,
-  openCircuitVoltage: 32.9,
-  peakCurrent: 7.61,
-  peakVoltage: 26.3,
-  shortCircuitCoefficient: 0.0032,
-  openCircuitCoefficient: -0.123,
+  ...VILLALVA_DATASHEET,
   peakPowerCoefficient: -0.0047,
 };
 

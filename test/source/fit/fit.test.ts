@@ -9,17 +9,10 @@ import {
   type Fit,
 } from '../../../src/source/fit/fit.js';
 import { SingleDiodeCurve } from '../../../src/source/single-diode-curve.js';
+import { VILLALVA_DATASHEET } from '../villalva-datasheet.js';
 
 const SHEET: Datasheet = {
-  name: '54 cells',
-  technology: 'poly-si',
-  cellsInSeries: 54,
-  shortCircuitCurrent: 8.21,
-  openCircuitVoltage: 32.9,
-  peakCurrent: 7.61,
-  peakVoltage: 26.3,
-  shortCircuitCoefficient: 0.0032,
-  openCircuitCoefficient: -0.123,
+  ...VILLALVA_DATASHEET,
   peakPowerCoefficient: -0.0047,
 };
 /** Far too many cells. */

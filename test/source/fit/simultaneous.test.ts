@@ -8,6 +8,7 @@ import { SingleDiodeCurve } from '../../../src/source/single-diode-curve.js';
 import { TECHNOLOGIES } from '../../../src/source/technology.js';
 import { datasheetOf, fillFactor, type DatasheetForm } from '../any-datasheet.js';
 import { anyModule, type AnyModule } from '../any-diode.js';
+import { VILLALVA_DATASHEET } from '../villalva-datasheet.js';
 
 const modules = fc
   .integer({ min: 0, max: 1e9 })
@@ -21,18 +22,7 @@ const isPlausible = (d: Datasheet): boolean =>
   d.peakVoltage < d.openCircuitVoltage &&
   d.peakCurrent < d.shortCircuitCurrent;
 
-/** The 54-cell module of Villalva, Gazoli and Ruppert Filho 2009. */
-const SHEET: Datasheet = {
-  name: '54 cells',
-  technology: 'poly-si',
-  cellsInSeries: 54,
-  shortCircuitCurrent: 8.21,
-  openCircuitVoltage: 32.9,
-  peakCurrent: 7.61,
-  peakVoltage: 26.3,
-  shortCircuitCoefficient: 0.0032,
-  openCircuitCoefficient: -0.123,
-};
+const SHEET: Datasheet = VILLALVA_DATASHEET;
 
 describe('fitSimultaneously, given the exact datasheet of a module from 1 to 200 cells,', () => {
   const forms: DatasheetForm['slopes'][] = ['both', 'at short circuit'];

@@ -8,18 +8,9 @@ import { TECHNOLOGIES } from '../../../src/source/technology.js';
 import { datasheetOf, fillFactor } from '../any-datasheet.js';
 import { anyModule } from '../any-diode.js';
 import { faultOf } from '../fault-of.js';
+import { VILLALVA_DATASHEET } from '../villalva-datasheet.js';
 
-const SHEET: Datasheet = {
-  name: '54 cells',
-  technology: 'poly-si',
-  cellsInSeries: 54,
-  shortCircuitCurrent: 8.21,
-  openCircuitVoltage: 32.9,
-  peakCurrent: 7.61,
-  peakVoltage: 26.3,
-  shortCircuitCoefficient: 0.0032,
-  openCircuitCoefficient: -0.123,
-};
+const SHEET: Datasheet = VILLALVA_DATASHEET;
 
 /** Ordinary modules: 1 % to 5 % lost in Rs, at least 30 Voc / Isc of Rsh, silicon. */
 const ordinary = fc
